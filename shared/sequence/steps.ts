@@ -1,0 +1,63 @@
+import { z } from 'zod';
+
+/** A step's speed: one of the named ceilings or an exact share of each joint's speed limit. */
+export const StepSpeed = z.union([z.enum(['creep', 'easy', 'full']), z.number().min(0.01).max(1)]);
+export type StepSpeed = z.infer<typeof StepSpeed>;
+
+/** Stable within a sequence, so that a problem or a drag can name its step. */
+const StepId = z.string().min(1).max(40);
+
+export const GoToStep = z.strictObject({
+  id: StepId,
+  kind: z.literal('goTo'),
+  poseId: z.string().min(1).max(64),
+  speed: StepSpeed,
+  /** Time to stand still at the pose before the next step, s. */
+  settle: z.number().min(0).max(60).default(0),
+});
+export const GripStep = z.strictObject({
+  id: StepId,
+  kind: z.literal('grip'),
+  /** 0 = closed, 1 = fully open. */
+  opening: z.number().min(0).max(1),
+});
+export const WaitStep = z.strictObject({
+  id: StepId,
+  kind: z.literal('wait'),
+  seconds: z.number().min(0).max(3600),
+});
+export const RemarkStep = z.strictObject({
+  id: StepId,
+  kind: z.literal('remark'),
+  text: z.string().max(500),
+});
+export const AgainStep = z.strictObject({
+  id: StepId,
+  kind: z.literal('again'),
+  times: z.int().min(1).max(1000),
+  get steps() {
+    return z.array(Step).max(200);
+  },
+});
+
+export type GoToStep = z.infer<typeof GoToStep>;
+export type GripStep = z.infer<typeof GripStep>;
+export type WaitStep = z.infer<typeof WaitStep>;
+export type RemarkStep = z.infer<typeof RemarkStep>;
+export interface AgainStep {
+  id: string;
+  kind: 'again';
+  times: number;
+  steps: Step[];
+}
+export type Step = GoToStep | GripStep | WaitStep | RemarkStep | AgainStep;
+export type StepKind = Step['kind'];
+export const Step: z.ZodType<Step> = z.lazy(() =>
+  z.discriminatedUnion('kind', [GoToStep, GripStep, WaitStep, RemarkStep, AgainStep]),
+) as unknown as z.ZodType<Step>;
+
+export const STEP_KINDS = ['goTo', 'grip', 'wait', 'again', 'remark'] as const;
+
+/** How deep "again" may nest, and how long a cycle may get once expanded. */
+export const MAX_NESTING = 4;
+export const MAX_EXPANDED_STEPS = 5000;
