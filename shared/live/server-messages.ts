@@ -155,6 +155,7 @@ export const EventMessage = z.strictObject({
   code: z.string(),
   message: z.string(),
 });
+export type ChangedMessage = z.infer<typeof ChangedMessage>;
 export type EventMessage = z.infer<typeof EventMessage>;
 export const DoneMessage = z.strictObject({ type: z.literal('done'), id: z.string() });
 export const RefusedMessage = z.strictObject({
