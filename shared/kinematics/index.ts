@@ -9,7 +9,11 @@ export {
   type Vec3,
 } from './chain';
 export { composeTransforms, emptyTransform, forwardKinematics, linkFrames, type Transform } from './frames';
+export { type IkListOptions, listInverseKinematics } from './ik-list';
+export type { IkTask } from './ik-task';
+export { type IkOptions, type IkResult, solveInverseKinematics } from './inverse';
 export { jacobian } from './jacobian';
 export { fastestPointSpeed, radiusAboutJoint, worstReach } from './points';
+export { seededRandom } from './random';
 export { rotationAbout, rotationFromRpy, rotationVector } from './rotation';
 export { type Dexterity, dexterity, singularValuesOf } from './singular-values';

@@ -1,0 +1,14 @@
+/**
+ * Evenly spread numbers in [0, 1) that are the same for the same seed: what needs "random" starts takes one
+ * of these, so that equal questions get equal answers. Mulberry32, 2³² long; not for secrets.
+ */
+export function seededRandom(seed: number): () => number {
+  let state = seed >>> 0;
+  return () => {
+    state = (state + 0x6d2b79f5) >>> 0;
+    let t = state;
+    t = Math.imul(t ^ (t >>> 15), t | 1);
+    t ^= t + Math.imul(t ^ (t >>> 7), t | 61);
+    return ((t ^ (t >>> 14)) >>> 0) / 4294967296;
+  };
+}
