@@ -140,6 +140,28 @@ export function boundedStep(chain: Chain, memory: IkMemory, damping: number, lon
   return largest;
 }
 
+/**
+ * Joint rates (scaled) for the twist in `memory.error`, into `memory.step`: the least-squares answer that
+ * leaves joints alone that stand at a limit and would leave it.
+ */
+export function freeStep(chain: Chain, memory: IkMemory, damping: number): void {
+  const { n, lower, upper } = chain;
+  const { q, step, pinned } = memory;
+  pinned.fill(0);
+  for (let round = 0; round <= n; round++) {
+    solveFree(n, memory, damping);
+    let again = false;
+    for (let i = 0; i < n; i++) {
+      if (pinned[i] === 1 || !(step[i]! > 0 ? q[i]! >= upper[i]! : step[i]! < 0 && q[i]! <= lower[i]!))
+        continue;
+      pinned[i] = 1;
+      step[i] = 0;
+      again = true;
+    }
+    if (!again) return;
+  }
+}
+
 /** Solves (JᵀJ + damping·1)·step = Jᵀe over the joints that are not pinned, given the steps of the pinned ones. */
 function solveFree(n: number, memory: IkMemory, damping: number): void {
   const { normal, factor, gradient, step, pinned, free } = memory;

@@ -13,6 +13,15 @@ export { type IkListOptions, listInverseKinematics } from './ik-list';
 export type { IkTask } from './ik-task';
 export { type IkOptions, type IkResult, solveInverseKinematics } from './inverse';
 export { jacobian } from './jacobian';
+export {
+  followLine,
+  type LineOptions,
+  type LinePath,
+  type LineRefusal,
+  type LineResult,
+  sampleLine,
+} from './line';
+export type { LineTarget } from './line-task';
 export { fastestPointSpeed, radiusAboutJoint, worstReach } from './points';
 export { seededRandom } from './random';
 export { rotationAbout, rotationFromRpy, rotationVector } from './rotation';
