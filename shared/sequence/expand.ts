@@ -105,7 +105,12 @@ export function expandSequence({ steps, poses, model }: ExpansionInput): Expansi
           );
           continue;
         }
-        for (let time = 0; time < step.times && !full; time++) visit(step.steps, `${path}.`, depth + 1);
+        // What repeats is visited once and copied, so that empty nested repeats cost nothing.
+        const from = expansion.steps.length;
+        visit(step.steps, `${path}.`, depth + 1);
+        const once = expansion.steps.slice(from);
+        for (let time = 1; time < step.times && !full && once.length > 0; time++)
+          for (const repeated of once) add(step, path, repeated);
       }
     }
   }
