@@ -51,7 +51,9 @@ export function lastBodyWithPayload(
   for (let k = 0; k < 10; k++) to[k] = bodies[10 * (n - 1) + k]!;
   if (!payload) return;
   const m = payload.mass;
-  const [cx, cy, cz] = payload.com;
+  const cx = payload.com[0]!;
+  const cy = payload.com[1]!;
+  const cz = payload.com[2]!;
   const t = tool;
   const x = t[0]! * cx + t[1]! * cy + t[2]! * cz + t[9]!;
   const y = t[3]! * cx + t[4]! * cy + t[5]! * cz + t[10]!;

@@ -8,7 +8,8 @@ import {
 } from './rotation';
 
 export type Vec3 = [number, number, number];
-type ReadonlyVec3 = readonly [number, number, number];
+/** Three numbers, checked when compiled; JSON and the arm model's tuples both fit. */
+type ReadonlyVec3 = readonly number[];
 
 /** Gravity where the model names none: standard gravity straight down in the base frame, m/s². */
 export const STANDARD_GRAVITY: ReadonlyVec3 = [0, 0, -9.80665];
@@ -128,8 +129,9 @@ export function compileChain(model: ChainModel): Chain {
     }
     alignBefore = align;
   });
-  checkNumbers([...model.tool.xyz, ...model.tool.rpy], 'the tool frame');
-  checkNumbers(chain.gravity, 'gravity');
+  checkThree(model.tool.xyz, 'the tool frame: xyz');
+  checkThree(model.tool.rpy, 'the tool frame: rpy');
+  checkThree(model.gravity ?? STANDARD_GRAVITY, 'gravity');
   writePose(chain.tool, 0, model.tool, alignBefore, null);
   return chain;
 }
@@ -210,15 +212,23 @@ function checkJoint(joint: ChainJoint, index: number): void {
   const { lower, upper } = joint.limits;
   if (joint.type !== 'revolute' && joint.type !== 'prismatic')
     throw new RangeError(`${where}: the type is ${String(joint.type)}, expected revolute or prismatic`);
-  checkNumbers([...joint.origin.xyz, ...joint.origin.rpy], `${where}: origin`);
-  checkNumbers(joint.axis, `${where}: axis`);
+  checkThree(joint.origin.xyz, `${where}: origin.xyz`);
+  checkThree(joint.origin.rpy, `${where}: origin.rpy`);
+  checkThree(joint.axis, `${where}: axis`);
+  checkThree(joint.link.com, `${where}: link.com`);
+  if (joint.link.end) checkThree(joint.link.end, `${where}: link.end`);
   if (Math.hypot(...joint.axis) < 1e-9) throw new RangeError(`${where}: the axis is the zero vector`);
   if (!(lower <= upper))
     throw new RangeError(`${where}: the lower limit ${lower} is not below the upper limit ${upper}`);
-  checkNumbers([joint.link.mass, ...joint.link.com, ...Object.values(joint.link.inertia)], `${where}: link`);
+  checkNumbers([joint.link.mass, ...Object.values(joint.link.inertia)], `${where}: link`);
 }
 
 function checkNumbers(values: Iterable<number>, what: string): void {
   for (const value of values)
     if (!Number.isFinite(value)) throw new RangeError(`${what}: ${value} is not a finite number`);
+}
+
+function checkThree(values: readonly number[], what: string): void {
+  if (values.length !== 3) throw new RangeError(`${what} has ${values.length} numbers, expected 3`);
+  checkNumbers(values, what);
 }

@@ -24,7 +24,11 @@ export function rotationFromRpy(rpy: Numbers3): Float64Array {
 }
 
 /** Rotation by `angle` (rad) about a unit axis: Rodrigues' formula. */
-export function rotationAbout(axis: Numbers3, angle: number, out = new Float64Array(9)): Float64Array {
+export function rotationAbout(
+  axis: Numbers3,
+  angle: number,
+  out: Float64Array = new Float64Array(9),
+): Float64Array {
   const [x, y, z] = [axis[0]!, axis[1]!, axis[2]!];
   const c = Math.cos(angle);
   const s = Math.sin(angle);
@@ -58,14 +62,18 @@ export function alignZ(direction: Numbers3): Float64Array<ArrayBuffer> {
   return Float64Array.of(x0, y[0], z[0], x1, y[1], z[1], x2, y[2], z[2]);
 }
 
-export function multiply3(a: Numbers3, b: Numbers3, out = new Float64Array(9)): Float64Array {
+export function multiply3(a: Numbers3, b: Numbers3, out: Float64Array = new Float64Array(9)): Float64Array {
   for (let i = 0; i < 9; i += 3)
     for (let j = 0; j < 3; j++) out[i + j] = a[i]! * b[j]! + a[i + 1]! * b[j + 3]! + a[i + 2]! * b[j + 6]!;
   return out;
 }
 
 /** Aᵀ·B */
-export function transposeMultiply3(a: Numbers3, b: Numbers3, out = new Float64Array(9)): Float64Array {
+export function transposeMultiply3(
+  a: Numbers3,
+  b: Numbers3,
+  out: Float64Array = new Float64Array(9),
+): Float64Array {
   for (let i = 0; i < 3; i++)
     for (let j = 0; j < 3; j++)
       out[3 * i + j] = a[i]! * b[j]! + a[i + 3]! * b[j + 3]! + a[i + 6]! * b[j + 6]!;

@@ -57,7 +57,7 @@ export interface Dexterity {
   manipulability: number;
   /** Product of the singular values of the position rows alone. */
   translationManipulability: number;
-  /** Smallest singular value of the position rows over the largest, 0 (a direction is lost) … 1 (all alike). */
+  /** Smallest singular value of the position rows over the largest: 0 (a direction is lost) … 1 (all alike). Fewer than three joints: of as many directions. */
   translationIsotropy: number;
 }
 
