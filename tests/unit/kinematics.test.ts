@@ -160,7 +160,8 @@ describe('the modelled points', () => {
           const bound = worstReach(chain);
           for (const q of places)
             for (let joint = 0; joint < chain.n; joint++)
-              expect(radiusAboutJoint(chain, q, joint)).toBeLessThanOrEqual(bound[joint]! + 1e-12);
+              // Axes within 1e-7 rad count as parallel: over a few metres that is less than this.
+              expect(radiusAboutJoint(chain, q, joint)).toBeLessThanOrEqual(bound[joint]! + 1e-6);
         },
       ),
     );
