@@ -37,7 +37,10 @@ export type BoardFault = 'watchdog' | 'underrun' | 'limit' | 'driver' | 'brownOu
 
 /** Acts on a board, each idempotent. Set-points go by `send`. */
 export type BoardOrder =
-  /** Energise one joint: a servo's first pulse goes to `assumed`, a stepper stands where it is. */
+  /**
+   * Energise one joint. A servo's first pulse goes to `assumed`; a stepper stands where it is and its count
+   * reads `assumed`, which is a way of counting and says nothing about where it stands.
+   */
   | { kind: 'energise'; joint: number; assumed: number }
   | { kind: 'energiseGripper'; assumed: number }
   | { kind: 'motorsOff' }

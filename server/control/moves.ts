@@ -1,0 +1,84 @@
+import {
+  alongPath,
+  jointPath,
+  pathLimits,
+  planPosition,
+  planVelocity,
+  restPosition,
+  sampleProfile,
+} from '../../shared/motion';
+import { capsFor, reachToUse } from './ceiling';
+import type { Arm, ControllerState, Move } from './state';
+
+/** The limits of s that hold for this move now. */
+function limitsOf(arm: Arm, state: ControllerState, move: Move) {
+  return pathLimits(arm.chain, move.path, capsFor(state, move.fraction));
+}
+
+/** Starts a move from where the arm stands to `to`; `fraction` is the speed the act itself asks for. */
+export function startMove(
+  arm: Arm,
+  state: ControllerState,
+  to: readonly number[],
+  fraction: number,
+  target: number[] | null,
+): void {
+  const path = jointPath(arm.chain, state.q, to, reachToUse(arm, state));
+  const s = { position: 0, velocity: 0, acceleration: 0 };
+  const move: Move = {
+    path,
+    fraction,
+    profile: { duration: 0, phases: [], end: s },
+    t: 0,
+    s,
+    ending: false,
+    target,
+  };
+  move.profile = planPosition(s, path.length, limitsOf(arm, state, move));
+  state.move = move;
+}
+
+/** Goes on to the path's end from wherever on it the move is; after a pause, or under a lower ceiling. */
+export function replanMove(arm: Arm, state: ControllerState, move: Move): void {
+  const start = { ...move.s };
+  move.profile = move.ending
+    ? planVelocity(start, 0, limitsOf(arm, state, move))
+    : planPosition(start, move.path.length, limitsOf(arm, state, move));
+  move.t = 0;
+}
+
+/** Ramps down on the path and comes to rest as soon as the limits allow. */
+export function letGo(arm: Arm, state: ControllerState): void {
+  const { move } = state;
+  if (!move || move.ending) return;
+  move.ending = true;
+  replanMove(arm, state, move);
+}
+
+export function isMoving(state: ControllerState): boolean {
+  return state.move !== null && state.move.t < state.move.profile.duration;
+}
+
+/** Brings the move `dt` further and writes q, qd, qdd. A finished move stays for a resume until it is dropped. */
+export function advanceMove(state: ControllerState, dt: number): void {
+  const { move } = state;
+  if (!move) return;
+  const wasMoving = isMoving(state);
+  move.t += dt;
+  sampleProfile(move.profile, move.t, move.s);
+  const { direction } = move.path;
+  for (let i = 0; i < direction.length; i++) {
+    state.qd[i] = direction[i]! * move.s.velocity;
+    state.qdd[i] = direction[i]! * move.s.acceleration;
+  }
+  // Once at rest the last position is kept as it was sent: no further set-point differs by a rounding.
+  if (wasMoving) alongPath(move.path, move.s.position, state.q);
+}
+
+/** Where each joint would come to rest if let go in this tick. */
+export function stopAt(arm: Arm, state: ControllerState): number[] {
+  const { move } = state;
+  if (!move || !isMoving(state)) return [...state.q];
+  const rest = restPosition(move.s, limitsOf(arm, state, move));
+  return alongPath(move.path, rest, [...state.q]);
+}
