@@ -3,6 +3,7 @@ import { attempt } from './ik-attempt';
 import { type IkMemory, ikMemory } from './ik-memory';
 import { drawAnywhere, largestMove, squaredDistance, unwindTowardsSeed } from './ik-starts';
 import { AXIS, compileTask, type IkTask, POSE } from './ik-task';
+import { wristSolutions } from './ik-wrist';
 import { seededRandom } from './random';
 
 export interface IkListOptions {
@@ -42,8 +43,11 @@ export function listInverseKinematics(
   const separation = options.separation ?? (chain.n > taskSize(memory) ? COARSE_SEPARATION : SEPARATION);
   const random = options.random ?? seededRandom(1);
   const found: Float64Array[] = [];
-  for (let start = 0; start < (options.starts ?? 200) && found.length < (options.most ?? 32); start++) {
-    if (start === 0) q.set(seed);
+  const closed = closedForms(chain, memory);
+  const starts = closed.length > 0 ? 0 : (options.starts ?? 400);
+  for (let start = -closed.length; start <= starts && found.length < (options.most ?? 32); start++) {
+    if (start < 0) q.set(closed[start + closed.length]!);
+    else if (start === 0) q.set(seed);
     else drawAnywhere(chain, memory, random);
     if (
       !attempt(chain, memory, options.positionTolerance ?? 1e-6, options.rotationTolerance ?? 1e-5, 60, false)
@@ -53,6 +57,16 @@ export function listInverseKinematics(
     if (!found.some((known) => sameUpToTurns(chain, memory, known, q, separation))) found.push(q.slice());
   }
   return found.sort((a, b) => squaredDistance(memory, a, seed) - squaredDistance(memory, b, seed));
+}
+
+/** Every solution within the limits of an arm that has a closed form; none for others. */
+function closedForms(chain: Chain, memory: IkMemory): Float64Array[] {
+  const { wrist, task, seed, solutions } = memory;
+  if (!wrist || task.kind !== POSE) return [];
+  const count = wristSolutions(wrist, task, seed, solutions);
+  return Array.from({ length: count }, (_, k) => solutions.slice(6 * k, 6 * k + 6)).filter((q) =>
+    unwindTowardsSeed(chain, q, seed),
+  );
 }
 
 function taskSize(memory: IkMemory): number {

@@ -1,5 +1,6 @@
 import type { Chain } from './chain';
 import { type CompiledTask, emptyTask } from './ik-task';
+import { type SphericalWrist, sphericalWristOf } from './ik-wrist';
 
 /** Working memory of inverse kinematics for one chain, made once. */
 export interface IkMemory {
@@ -31,6 +32,11 @@ export interface IkMemory {
   /** Where random starts are drawn, rad or m. */
   drawLower: Float64Array;
   drawUpper: Float64Array;
+  /** m: no point of the tool is ever farther from the first joint's frame at 0. */
+  reach: number;
+  /** The arm's closed form, where it has one, and room for its solutions. */
+  wrist: SphericalWrist | null;
+  solutions: Float64Array;
 }
 
 export function ikMemory(chain: Chain): IkMemory {
@@ -70,7 +76,21 @@ function newMemory(chain: Chain): IkMemory {
     drawUpper: chain.upper.map((value, i) =>
       bounded(value, bounded(chain.lower[i]!, -span(i)) + 2 * span(i)),
     ),
+    reach: reachOf(chain),
+    wrist: sphericalWristOf(chain, size),
+    solutions: new Float64Array(8 * 6),
   };
+}
+
+/** Triangle inequality over all links and the whole travel of sliding joints. */
+function reachOf(chain: Chain): number {
+  let reach = Math.hypot(chain.tool[9]!, chain.tool[10]!, chain.tool[11]!);
+  for (let i = 0; i < chain.n; i++) {
+    const o = 12 * i + 9;
+    if (i > 0) reach += Math.hypot(chain.fixed[o]!, chain.fixed[o + 1]!, chain.fixed[o + 2]!);
+    if (chain.prismatic[i] === 1) reach += Math.max(Math.abs(chain.lower[i]!), Math.abs(chain.upper[i]!));
+  }
+  return reach;
 }
 
 /** Length of the whole arm laid out, m; 1 where it has no length at all. */

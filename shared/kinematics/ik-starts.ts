@@ -21,21 +21,30 @@ export function drawAroundSeed(chain: Chain, memory: IkMemory, random: () => num
   }
 }
 
-/** Moves turning joints by whole turns, within their limits, as near to the seed as they go. */
-export function unwindTowardsSeed(chain: Chain, q: Float64Array, seed: ArrayLike<number>): void {
+/** How far outside a limit still is rounding; what is let in is then put onto the limit. */
+const LIMIT_ROUNDING = 1e-9;
+
+/**
+ * Moves turning joints by whole turns, within their limits, as near to the seed as they go.
+ *
+ * @returns whether every joint could be brought within its limits
+ */
+export function unwindTowardsSeed(chain: Chain, q: Float64Array, seed: ArrayLike<number>): boolean {
+  let inside = true;
   for (let i = 0; i < chain.n; i++) {
-    if (chain.prismatic[i] === 1) continue;
-    const away = seed[i]! - q[i]!;
-    if (away < Math.PI && away > -Math.PI) continue;
-    let turns = Math.round(away / (2 * Math.PI));
-    const direction = Math.sign(turns);
-    for (; turns !== 0; turns -= direction) {
-      const value = q[i]! + 2 * Math.PI * turns;
-      if (value > chain.upper[i]! || value < chain.lower[i]!) continue;
-      q[i] = value;
-      break;
+    const lower = chain.lower[i]!;
+    const upper = chain.upper[i]!;
+    if (chain.prismatic[i] === 0) {
+      const turn = 2 * Math.PI;
+      const fewest = Math.ceil((lower - LIMIT_ROUNDING - q[i]!) / turn);
+      const most = Math.floor((upper + LIMIT_ROUNDING - q[i]!) / turn);
+      const nearest = Math.round((seed[i]! - q[i]!) / turn);
+      if (fewest > most) inside = false;
+      else q[i] = q[i]! + turn * Math.min(Math.max(nearest, fewest), most);
     }
+    q[i] = Math.min(Math.max(q[i]!, lower), upper);
   }
+  return inside;
 }
 
 /** Squared distance of two configurations, joints in rad or shares of the arm's size. */

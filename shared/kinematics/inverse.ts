@@ -1,9 +1,10 @@
-import type { Chain } from './chain';
+import type { Chain, Vec3 } from './chain';
 import { checkLength, sweepFrames } from './frames';
 import { attempt } from './ik-attempt';
 import { type IkMemory, ikMemory } from './ik-memory';
 import { drawAnywhere, drawAroundSeed, largestMove, squaredDistance, unwindTowardsSeed } from './ik-starts';
-import { compileTask, type IkTask, positionErrorOf, rotationErrorOf, taskError } from './ik-task';
+import { compileTask, type IkTask, POSE, positionErrorOf, rotationErrorOf, taskError } from './ik-task';
+import { wristSolutions } from './ik-wrist';
 import { seededRandom } from './random';
 
 export interface IkOptions {
@@ -50,6 +51,8 @@ const ALTERNATIVES = 5;
 const NEAR = 1;
 /** Every so many starts one is followed to the bottom, solution or not. */
 const PATIENT_EVERY = 6;
+/** Starts for a target that is certainly out of reach. */
+const HOPELESS_RESTARTS = 80;
 const BOTTOM_ITERATIONS = 300;
 const START_SEED = 20_240_229;
 
@@ -103,7 +106,21 @@ function search(chain: Chain, memory: IkMemory, options: IkOptions): void {
   if (solved && largestMove(memory, q, seed) <= NEAR) return;
   let bestCost = memory.cost;
   let bestDistance = solved ? squaredDistance(memory, q, seed) : Number.POSITIVE_INFINITY;
-  let left = solved ? Math.min(alternatives, options.restarts ?? RESTARTS) : (options.restarts ?? RESTARTS);
+  // The closed form knows all solutions; the attempt takes out its rounding and checks it.
+  if (
+    nearestClosedForm(chain, memory) &&
+    attempt(chain, memory, positionTolerance, rotationTolerance, iterations, false)
+  ) {
+    // Only in a singular configuration, where angles trade, can the first attempt have been nearer.
+    if (squaredDistance(memory, q, seed) < bestDistance) best.set(q);
+    return;
+  }
+  const most = options.restarts ?? RESTARTS;
+  let left = solved
+    ? Math.min(alternatives, most)
+    : outOfReach(chain, memory)
+      ? Math.min(HOPELESS_RESTARTS, most)
+      : most;
   const random = options.random ?? seededRandom(START_SEED);
   for (let start = 1; left > 0; start++, left--) {
     if (start % 2 === 1) drawAroundSeed(chain, memory, random);
@@ -127,6 +144,29 @@ function search(chain: Chain, memory: IkMemory, options: IkOptions): void {
   q.set(best);
   attempt(chain, memory, positionTolerance, rotationTolerance, BOTTOM_ITERATIONS, true);
   best.set(q);
+}
+
+/** Leaves in `memory.q` the solution nearest to the seed of an arm with a closed form; false when it has none in its limits. */
+function nearestClosedForm(chain: Chain, memory: IkMemory): boolean {
+  const { wrist, task, seed, solutions, q, trial } = memory;
+  if (!wrist || task.kind !== POSE) return false;
+  const count = wristSolutions(wrist, task, seed, solutions);
+  let nearest = Number.POSITIVE_INFINITY;
+  for (let k = 0; k < count; k++) {
+    trial.set(solutions.subarray(6 * k, 6 * k + 6));
+    if (!unwindTowardsSeed(chain, trial, seed)) continue;
+    const distance = squaredDistance(memory, trial, seed);
+    if (distance >= nearest) continue;
+    nearest = distance;
+    q.set(trial);
+  }
+  return nearest < Number.POSITIVE_INFINITY;
+}
+
+/** Surely out of reach: then starts only serve to find the nearest result, and few will do. */
+function outOfReach(chain: Chain, { task, reach }: IkMemory): boolean {
+  const [x, y, z] = [9, 10, 11].map((k) => task.position[k - 9]! - chain.fixed[k]!) as Vec3;
+  return Math.hypot(x, y, z) > reach;
 }
 
 /** Looks at the chosen configuration afresh and says what is true of it. */

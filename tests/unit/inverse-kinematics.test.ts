@@ -199,4 +199,52 @@ describe('listInverseKinematics', () => {
   it('lists nothing for a place beyond reach', () => {
     expect(listInverseKinematics(flatArm([0.3, 0.25]), { position: [0.6, 0, 0] })).toEqual([]);
   });
+
+  // An arm with axes 2 and 3 parallel and a spherical wrist, whatever its other measures.
+  it('lists the configuration that any arm with a spherical wrist came from, and prefers the nearest', () => {
+    const measure = fc.double({ min: -0.3, max: 0.3, noNaN: true });
+    const slant = fc.double({ min: 0.3, max: 2.8, noNaN: true });
+    const angle = fc.double({ min: -3, max: 3, noNaN: true });
+    const wristArm = fc.record({
+      d: fc.array(measure, { minLength: 12, maxLength: 12 }),
+      slants: fc.array(slant, { minLength: 4, maxLength: 4 }),
+      turns: fc.array(angle, { minLength: 6, maxLength: 6 }),
+      q: fc.array(fc.double({ min: 0.2, max: 2.9, noNaN: true }), { minLength: 6, maxLength: 6 }),
+      signs: fc.array(fc.constantFrom(1, -1), { minLength: 6, maxLength: 6 }),
+    });
+    fc.assert(
+      fc.property(wristArm, ({ d, slants, turns, q: sizes, signs }) => {
+        const at = (i: number, xyz: number[], tilt: number): ChainModel['joints'][number] => ({
+          name: `joint ${i + 1}`,
+          type: 'revolute',
+          origin: { xyz, rpy: [tilt, 0, turns[i]!] },
+          axis: [0, 0, 1],
+          limits: { lower: -Math.PI, upper: Math.PI },
+          link: { mass: 1, com: [0, 0, 0], inertia: none },
+        });
+        const chain = compileChain({
+          joints: [
+            at(0, [d[0]!, d[1]!, d[2]!], 0.3),
+            at(1, [d[3]!, d[4]!, d[5]!], slants[0]!),
+            at(2, [0.1 + Math.abs(d[6]!), d[7]!, d[8]!], 0),
+            at(3, [d[9]!, 0.2, d[10]!], slants[1]!),
+            at(4, [0, 0, 0], slants[2]!),
+            at(5, [0, 0, 0], slants[3]!),
+          ],
+          tool: { xyz: [0.02, d[11]!, 0.1], rpy: [0.4, -0.2, 1] },
+        });
+        const q = sizes.map((value, i) => value * signs[i]!);
+        const task = taskAt(chain, q, 'pose');
+        const list = listInverseKinematics(chain, task, { seed: q });
+        expect(list.length).toBeLessThanOrEqual(8);
+        for (const found of list) expect(errorsOf(chain, found, task).off).toBeLessThan(1e-6);
+        expect(Math.max(...q.map((value, i) => Math.abs(value - list[0]![i]!)))).toBeLessThan(1e-4);
+        const seed = q.map((value) => -value / 2);
+        const nearest = (a: ArrayLike<number>) => Math.hypot(...seed.map((value, i) => value - a[i]!));
+        const solved = solveInverseKinematics(chain, task, seed);
+        expect(nearest(solved.q)).toBeLessThan(Math.min(...list.map(nearest)) + 1e-4);
+      }),
+      { seed: 6 },
+    );
+  });
 });
