@@ -9,9 +9,6 @@ export interface Transform {
   rotation: Float64Array;
 }
 
-/** Where `sweepFrames` puts the tool frame. */
-export const toolOffset = (chain: Chain): number => 12 * chain.n;
-
 /**
  * Fills `chain.frames` for configuration q: per joint the inner frame after the joint's motion, then the
  * tool frame, each as rotation (9, row-major) and position (3) in the base frame.

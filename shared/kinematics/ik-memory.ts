@@ -15,6 +15,8 @@ export interface IkMemory {
   trialError: Float64Array;
   /** Best configuration that was not good enough, over all attempts. */
   best: Float64Array;
+  /** A solution kept while a better one is looked for. */
+  spare: Float64Array;
   /** Columns of the Jacobian, six numbers per joint, in scaled units (below). */
   columns: Float64Array;
   /** JᵀJ, its factor, Jᵀe, the step and what is pinned at a limit. */
@@ -63,6 +65,7 @@ function newMemory(chain: Chain): IkMemory {
     error: new Float64Array(6),
     trialError: new Float64Array(6),
     best: new Float64Array(n),
+    spare: new Float64Array(n),
     columns: new Float64Array(6 * n),
     normal: new Float64Array(n * n),
     factor: new Float64Array(n * n),

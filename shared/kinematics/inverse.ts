@@ -2,6 +2,7 @@ import type { Chain, Vec3 } from './chain';
 import { checkLength, sweepFrames } from './frames';
 import { attempt } from './ik-attempt';
 import { type IkMemory, ikMemory } from './ik-memory';
+import { hasJointsToSpare, slideTowardsSeed } from './ik-spare';
 import { drawAnywhere, drawAroundSeed, largestMove, squaredDistance, unwindTowardsSeed } from './ik-starts';
 import { compileTask, type IkTask, POSE, positionErrorOf, rotationErrorOf, taskError } from './ik-task';
 import { wristSolutions } from './ik-wrist';
@@ -46,7 +47,7 @@ const ROTATION_TOLERANCE_RAD = 1e-5;
 const ITERATIONS = 60;
 /** At 2 to 4 attempts per solved task, so many are for targets whose solutions all hug the limits. */
 const RESTARTS = 400;
-const ALTERNATIVES = 5;
+const ALTERNATIVES = 4;
 /** A solution that moves no joint farther than this from the seed is taken without looking for a nearer one; rad. */
 const NEAR = 1;
 /** Every so many starts one is followed to the bottom, solution or not. */
@@ -102,6 +103,8 @@ function search(chain: Chain, memory: IkMemory, options: IkOptions): void {
   const alternatives = options.alternatives ?? ALTERNATIVES;
   let solved = attempt(chain, memory, positionTolerance, rotationTolerance, iterations, false);
   if (solved) unwindTowardsSeed(chain, q, seed);
+  const spare = hasJointsToSpare(chain, memory);
+  if (solved && spare) slideTowardsSeed(chain, memory, positionTolerance, rotationTolerance);
   best.set(q);
   if (solved && largestMove(memory, q, seed) <= NEAR) return;
   let bestCost = memory.cost;
@@ -140,8 +143,12 @@ function search(chain: Chain, memory: IkMemory, options: IkOptions): void {
       best.set(q);
     }
   }
-  if (solved) return;
   q.set(best);
+  if (solved) {
+    if (spare) slideTowardsSeed(chain, memory, positionTolerance, rotationTolerance);
+    best.set(q);
+    return;
+  }
   attempt(chain, memory, positionTolerance, rotationTolerance, BOTTOM_ITERATIONS, true);
   best.set(q);
 }

@@ -108,16 +108,17 @@ describe('solveInverseKinematics', () => {
     );
   });
 
-  it('answers from beside the solution with a solution as near', () => {
+  it('answers from beside a known solution with one at least as near, joints to spare or not', () => {
     fc.assert(
-      fc.property(anySearch(6, 6), ({ model, q, seed }) => {
+      fc.property(anySearch(4, 7), ({ model, q, seed, kind }) => {
         const chain = compileChain(model);
         const beside = q.map((value, i) => value + 0.02 * (seed[i]! - value));
-        const found = solveInverseKinematics(chain, taskAt(chain, q, 'pose'), beside);
+        const found = solveInverseKinematics(chain, taskAt(chain, q, kind), beside);
         const distance = (a: ArrayLike<number>) => Math.hypot(...beside.map((value, i) => value - a[i]!));
-        expect(distance(found.q)).toBeLessThan(1.5 * distance(q) + 1e-3);
+        // Metres and radians are mixed here and weighted by the solver: hence not exactly the least.
+        expect(distance(found.q)).toBeLessThan(1.1 * distance(q) + 1e-3);
       }),
-      { seed: 4 },
+      { seed: 4, numRuns: 200 },
     );
   });
 

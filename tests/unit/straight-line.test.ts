@@ -85,7 +85,7 @@ describe('followLine', () => {
           }
         }
       }),
-      { seed: 9 },
+      { seed: 9, numRuns: 60 },
     );
     // Odd arms refuse many lines; enough must have been judged for this test to mean anything.
     expect(followed).toBeGreaterThan(20);
