@@ -1,12 +1,10 @@
 import { reflectedInertia } from '../shared/arm/drives';
 import type { ArmModel } from '../shared/arm/model';
+import { CARRIES_BELOW } from '../shared/arm/motion-rules';
 import { inverseDynamics } from '../shared/dynamics';
 import { type Chain, compileChain } from '../shared/kinematics';
 import { Servo } from './servo';
 import { Stepper } from './stepper';
-
-/** Fingers closer than this share of their opening are taken to carry the arm's payload. */
-const CARRIES_BELOW = 0.6;
 
 export interface VirtualArmOptions {
   /** Where the joints really are at power-up, rad or m. */

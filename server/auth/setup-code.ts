@@ -20,7 +20,7 @@ export class SetupCode {
     return timingSafeEqual(Buffer.from(given), Buffer.from(this.hash));
   }
 
-  useUp(): void {
+  spend(): void {
     this.used = true;
   }
 }

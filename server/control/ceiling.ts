@@ -1,12 +1,8 @@
+import { POINT_SPEED_CREEP_M_S, POINT_SPEED_M_S } from '../../shared/arm/motion-rules';
 import { CEILINGS, trustCeiling, worstTrust } from '../../shared/arm/trust';
 import type { CeilingState } from '../../shared/live/server-messages';
 import type { PathCaps } from '../../shared/motion';
 import type { Arm, ControllerState } from './state';
-
-/** ISO 10218-1: the tool centre point at most 250 mm/s in manual reduced-speed mode; here for every modelled point. */
-const POINT_SPEED_M_S = 0.25;
-/** Our own stricter figure at creep and while the position is not known. */
-const POINT_SPEED_CREEP_M_S = 0.05;
 
 export function ceilingState(state: ControllerState): CeilingState {
   const trust = trustCeiling(worstTrust(state.trust));

@@ -1,3 +1,4 @@
+import { GRIPPER_PACE } from '../../shared/arm/motion-rules';
 import { CEILINGS } from '../../shared/arm/trust';
 import { shownValue } from '../../shared/arm/units';
 import { radiusAboutJoint } from '../../shared/kinematics';
@@ -205,9 +206,6 @@ export function setGripper(arm: Arm, state: ControllerState, opening: number): R
   state.gripper.target = opening;
   return null;
 }
-
-/** The gripper moves slowly: a share of what its servo could do. */
-const GRIPPER_PACE = 0.6;
 
 export function tickGripper(arm: Arm, state: ControllerState, dt: number): void {
   const { gripper } = state;

@@ -1,9 +1,7 @@
 import { availableTorque, reflectedInertia, wouldDrop } from '../../shared/arm/drives';
+import { CARRIES_BELOW } from '../../shared/arm/motion-rules';
 import { gravityTorques, inverseDynamics } from '../../shared/dynamics';
 import type { Arm, ControllerState } from './state';
-
-/** With the fingers closer than this share of their opening, the gripper is taken to carry its payload. */
-const CARRIES_BELOW = 0.6;
 
 /** What the gripper is taken to carry: the arm's payload once it has closed, nothing while it is open. */
 export function carried(arm: Arm, gripper: ControllerState['gripper']) {

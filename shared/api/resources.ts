@@ -180,6 +180,7 @@ export const Approval = z.object({
   /** What changed, when it no longer holds. */
   why: z.string().nullable(),
 });
+export type Approval = z.infer<typeof Approval>;
 export const SequenceSummary = z.object({
   id: z.string(),
   name: z.string(),

@@ -2,7 +2,7 @@ import type { Chain, Vec3 } from './chain';
 import { checkLength, sweepFrames } from './frames';
 import { attempt } from './ik-attempt';
 import { type IkMemory, ikMemory } from './ik-memory';
-import { hasJointsToSpare, slideTowardsSeed } from './ik-spare';
+import { slideTowardsSeed } from './ik-spare';
 import { drawAnywhere, drawAroundSeed, largestMove, squaredDistance, unwindTowardsSeed } from './ik-starts';
 import { compileTask, type IkTask, POSE, positionErrorOf, rotationErrorOf, taskError } from './ik-task';
 import { wristSolutions } from './ik-wrist';
@@ -18,7 +18,7 @@ export interface IkOptions {
   /** Further starts when the seed does not lead to a solution; 0 = only from the seed. */
   restarts?: number;
   /**
-   * Further starts once a solution is known that lies far (over 1 rad in a joint) from the seed, to find a
+   * Further starts once a solution is known that lies far (over half a radian in a joint) from the seed, to find a
    * nearer one. More cost more time and find the nearest one more surely.
    */
   alternatives?: number;
@@ -49,7 +49,7 @@ const ITERATIONS = 60;
 const RESTARTS = 400;
 const ALTERNATIVES = 4;
 /** A solution that moves no joint farther than this from the seed is taken without looking for a nearer one; rad. */
-const NEAR = 1;
+const NEAR = 0.5;
 /** Every so many starts one is followed to the bottom, solution or not. */
 const PATIENT_EVERY = 6;
 /** Starts for a target that is certainly out of reach. */
@@ -103,8 +103,7 @@ function search(chain: Chain, memory: IkMemory, options: IkOptions): void {
   const alternatives = options.alternatives ?? ALTERNATIVES;
   let solved = attempt(chain, memory, positionTolerance, rotationTolerance, iterations, false);
   if (solved) unwindTowardsSeed(chain, q, seed);
-  const spare = hasJointsToSpare(chain, memory);
-  if (solved && spare) slideTowardsSeed(chain, memory, positionTolerance, rotationTolerance);
+  if (solved) slideTowardsSeed(chain, memory, positionTolerance, rotationTolerance);
   best.set(q);
   if (solved && largestMove(memory, q, seed) <= NEAR) return;
   let bestCost = memory.cost;
@@ -145,7 +144,7 @@ function search(chain: Chain, memory: IkMemory, options: IkOptions): void {
   }
   q.set(best);
   if (solved) {
-    if (spare) slideTowardsSeed(chain, memory, positionTolerance, rotationTolerance);
+    slideTowardsSeed(chain, memory, positionTolerance, rotationTolerance);
     best.set(q);
     return;
   }

@@ -8,13 +8,13 @@ export default class PlainReporter implements Reporter {
     this.last.set(test.id, result.status);
   }
 
-  onEnd(_result: FullResult): { status: FullResult['status'] } | undefined {
+  async onEnd(_result: FullResult): Promise<{ status?: FullResult['status'] }> {
     const statuses = [...this.last.values()];
     const passed = statuses.filter((s) => s === 'passed').length;
     const skipped = statuses.filter((s) => s === 'skipped').length;
     const failed = statuses.length - passed - skipped;
     process.stdout.write(`\nbrowser: ${passed} passed, ${failed} failed, ${skipped} skipped\n`);
-    return passed + failed === 0 ? { status: 'failed' } : undefined;
+    return passed + failed === 0 ? { status: 'failed' } : {};
   }
 
   printsToStdio(): boolean {
