@@ -122,6 +122,35 @@ describe('solveInverseKinematics', () => {
     );
   });
 
+  it('comes as near to the seed as a planar arm with a joint to spare can (against a scan of its solutions)', () => {
+    const [l1, l2, l3] = [0.3, 0.25, 0.2];
+    const chain = flatArm([l1, l2, l3], Math.PI);
+    const small = fc.double({ min: -0.4, max: 0.4, noNaN: true });
+    const bend = fc.double({ min: 0.5, max: 1.5, noNaN: true });
+    fc.assert(
+      fc.property(small, bend, bend, fc.tuple(small, small, small), (q1, q2, q3, away) => {
+        const { position } = forwardKinematics(chain, [q1, q2, q3]);
+        const seed = [q1 + away[0], q2 + away[1], q3 + away[2]];
+        const distance = (q: ArrayLike<number>) => Math.hypot(...seed.map((value, i) => value - q[i]!));
+        let least = Number.POSITIVE_INFINITY;
+        for (let first = -1; first < 1; first += 1e-4) {
+          // The other two links from where the first ends: law of cosines, elbow one way (the seed's).
+          const x = position[0] - l1 * Math.cos(first);
+          const y = position[1] - l1 * Math.sin(first);
+          const cosine = (x * x + y * y - l2 * l2 - l3 * l3) / (2 * l2 * l3);
+          if (Math.abs(cosine) > 1) continue;
+          const third = Math.acos(cosine);
+          const second = Math.atan2(y, x) - Math.atan2(l3 * Math.sin(third), l2 + l3 * cosine) - first;
+          least = Math.min(least, distance([first, second, third]));
+        }
+        const { converged, q } = solveInverseKinematics(chain, { position }, seed);
+        expect(converged).toBe(true);
+        expect(distance(q)).toBeLessThan(1.001 * least + 1e-4);
+      }),
+      { numRuns: 25 },
+    );
+  });
+
   // Two links of 0.3 and 0.25 m reach 0.55 m: the nearest place to a target beyond is on the ray to it.
   it('stretches towards a target beyond reach and says how far it stays away', () => {
     const chain = flatArm([0.3, 0.25]);

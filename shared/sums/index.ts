@@ -1,0 +1,1 @@
+export { type WorstTorque, worstGravityTorques } from './worst-gravity';
