@@ -1,7 +1,7 @@
 import type { Chain } from '../kinematics';
 import { checkLength } from '../kinematics/frames';
 import { dynamicsMemory } from './body';
-import { type DynamicsOptions, inverseDynamics } from './inverse-dynamics';
+import { type DynamicsOptions, newtonEuler } from './inverse-dynamics';
 import { massMatrix } from './mass-matrix';
 
 /**
@@ -20,15 +20,22 @@ export function forwardDynamics(
   tau: ArrayLike<number>,
   options?: DynamicsOptions,
 ): Float64Array {
+  checkLength(chain, q, 'q');
+  checkLength(chain, qd, 'qd');
   checkLength(chain, tau, 'tau');
   const { n } = chain;
-  const { matrix, vector } = dynamicsMemory(chain);
+  const memory = dynamicsMemory(chain);
+  const { matrix, vector } = memory;
   const out = options?.out ?? new Float64Array(n);
   // tau may be the very array that the answer goes to.
-  for (let i = 0; i < n; i++) vector[i] = tau[i]!;
-  const still = zeros(chain);
-  const bias = inverseDynamics(chain, q, qd, still, { ...options, out });
-  for (let i = 0; i < n; i++) vector[i] = vector[i]! - bias[i]!;
+  for (let i = 0; i < n; i++) {
+    vector[i] = tau[i]!;
+    memory.q[i] = q[i]!;
+    memory.qd[i] = qd[i]!;
+    memory.qdd[i] = 0;
+  }
+  newtonEuler(chain, options?.gravity ?? chain.gravity, options?.payload, out);
+  for (let i = 0; i < n; i++) vector[i] = vector[i]! - out[i]!;
   massMatrix(chain, q, matrix, options?.payload);
   factor(chain, matrix);
   for (let i = 0; i < n; i++) {
@@ -42,14 +49,6 @@ export function forwardDynamics(
     out[i] = value / matrix[i * n + i]!;
   }
   return out;
-}
-
-function zeros(chain: Chain): Float64Array {
-  const known = chain.memory.get('zeros') as Float64Array | undefined;
-  if (known) return known;
-  const made = new Float64Array(chain.n);
-  chain.memory.set('zeros', made);
-  return made;
 }
 
 /** Cholesky factor in the lower triangle. */
