@@ -1,0 +1,70 @@
+import { queryOptions, useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
+import { z } from 'zod';
+import {
+  Rehearsal,
+  Sequence,
+  type SequenceChange,
+  type SequenceDraft,
+  SequenceSummary,
+  SequenceVersion,
+} from '../../shared/api/resources';
+import { api } from './client';
+
+const at = (armId: string, sequenceId: string) => `/arms/${armId}/sequences/${sequenceId}`;
+
+export const sequenceQueries = {
+  all: (armId: string) => ['arms', armId, 'sequences'] as const,
+  list: (armId: string) =>
+    queryOptions({
+      queryKey: sequenceQueries.all(armId),
+      queryFn: ({ signal }) => api.get(`/arms/${armId}/sequences`, z.array(SequenceSummary), { signal }),
+    }),
+  detail: (armId: string, sequenceId: string, version?: number) =>
+    queryOptions({
+      queryKey: [...sequenceQueries.all(armId), sequenceId, version ?? 'newest'] as const,
+      queryFn: ({ signal }) =>
+        api.get(`${at(armId, sequenceId)}${version ? `?version=${version}` : ''}`, Sequence, { signal }),
+    }),
+  versions: (armId: string, sequenceId: string) =>
+    queryOptions({
+      queryKey: [...sequenceQueries.all(armId), sequenceId, 'versions'] as const,
+      queryFn: ({ signal }) =>
+        api.get(`${at(armId, sequenceId)}/versions`, z.array(SequenceVersion), { signal }),
+    }),
+  rehearsal: (armId: string, sequenceId: string, version: number) =>
+    queryOptions({
+      queryKey: [...sequenceQueries.all(armId), sequenceId, 'rehearsal', version] as const,
+      queryFn: () => api.post(`${at(armId, sequenceId)}/rehearse`, { version }, Rehearsal),
+    }),
+};
+export const useSequences = (armId: string) => useQuery(sequenceQueries.list(armId));
+export const useSequence = (armId: string, sequenceId: string, version?: number) =>
+  useQuery(sequenceQueries.detail(armId, sequenceId, version));
+export const useSequenceVersions = (armId: string, sequenceId: string) =>
+  useQuery(sequenceQueries.versions(armId, sequenceId));
+export const useRehearsal = (armId: string, sequenceId: string, version: number, enabled: boolean) =>
+  useQuery({ ...sequenceQueries.rehearsal(armId, sequenceId, version), enabled });
+
+function useSequenceMutation<Body, Result>(armId: string, change: (body: Body) => Promise<Result>) {
+  const client = useQueryClient();
+  return useMutation({
+    mutationFn: change,
+    onSuccess: () => client.invalidateQueries({ queryKey: sequenceQueries.all(armId) }),
+  });
+}
+export const useCreateSequence = (armId: string) =>
+  useSequenceMutation(armId, (draft: z.input<typeof SequenceDraft>) =>
+    api.post(`/arms/${armId}/sequences`, draft, Sequence),
+  );
+export const useSaveSequence = (armId: string, sequenceId: string) =>
+  useSequenceMutation(armId, (change: z.input<typeof SequenceChange>) =>
+    api.put(at(armId, sequenceId), change, Sequence),
+  );
+export const useDeleteSequence = (armId: string) =>
+  useSequenceMutation(armId, (sequenceId: string) => api.delete(at(armId, sequenceId)));
+export const useApproveSequence = (armId: string, sequenceId: string) =>
+  useSequenceMutation(armId, (version: number) =>
+    api.post(`${at(armId, sequenceId)}/approve`, { version }, Sequence),
+  );
+export const useWithdrawApproval = (armId: string, sequenceId: string) =>
+  useSequenceMutation(armId, () => api.post(`${at(armId, sequenceId)}/withdraw`, {}, Sequence));

@@ -1,0 +1,145 @@
+import { useEffect, useState } from 'react';
+import type { ArmModel } from '../../../shared/arm/model';
+import { worstTrust } from '../../../shared/arm/trust';
+import { shownValue } from '../../../shared/arm/units';
+import { may } from '../../../shared/team/roles';
+import { Message } from '../../components/Message';
+import { sendCommand } from '../../live/connection';
+import { onHoldRefused } from '../../live/hold';
+import { useArmState, useHello, useInControl, useTelemetry } from '../../live/use-live';
+import { toast } from '../shell/toast';
+import { DeclareDialog } from './JointValuesDialog';
+import { RestCard } from './RestCard';
+
+/** One line (or the rest card) below the joints: what happens now, and what to do about it. */
+export function BottomLine({ model }: { model: ArmModel }) {
+  const motors = useArmState((state) => state?.motors ?? null);
+  const fault = useArmState((state) => state?.fault ?? null);
+  const trust = useArmState((state) => worstTrust(state?.trust ?? []));
+  const note = useArmState((state) => state?.trustNote ?? '');
+  const run = useArmState((state) => state?.run ?? null);
+  const inControl = useInControl();
+  const role = useHello()?.you.role ?? 'observer';
+  const [refused, setRefused] = useState<string | null>(null);
+  const [declaring, setDeclaring] = useState(false);
+  useEffect(() => onHoldRefused(setRefused), []);
+  // A refusal is answered by the next thing that moves.
+  useEffect(() => {
+    if (motors === 'moving') setRefused(null);
+  }, [motors]);
+
+  if (motors === null) return <Message>Opening the link to {model.name}…</Message>;
+  if (fault) {
+    const mayAcknowledge = inControl && (!fault.hard || may(role, 'fault.acknowledgeHard'));
+    return (
+      <Message
+        kind="fault"
+        action={
+          <button
+            type="button"
+            className="btn sm"
+            disabled={!mayAcknowledge}
+            onClick={() =>
+              void sendCommand({ type: 'fault.acknowledge' }).then(
+                (outcome) => !outcome.ok && toast(outcome.message),
+              )
+            }
+          >
+            {mayAcknowledge
+              ? 'Acknowledge'
+              : fault.hard
+                ? 'A builder acknowledges'
+                : 'Take control to acknowledge'}
+          </button>
+        }
+      >
+        {fault.message}
+      </Message>
+    );
+  }
+  if (motors === 'moving' || motors === 'stopping')
+    return <MovingLine model={model} stopping={motors === 'stopping'} />;
+  if (motors === 'resting' || motors === 'energising') return <RestCard model={model} />;
+  return (
+    <>
+      {refused ? (
+        <Message kind="fault">{refused}</Message>
+      ) : trust === 'unknown' || trust === 'doubtful' ? (
+        <Message
+          action={
+            <button type="button" className="btn sm" disabled={!inControl} onClick={() => setDeclaring(true)}>
+              Declare position…
+            </button>
+          }
+        >
+          <b>The position is {trust}.</b> {note} Creep, holds and nudges only, 10° or 20 mm a press.{' '}
+          {inControl
+            ? 'Declare where it stands, or reference a joint by its switch.'
+            : 'Take control to declare it.'}
+        </Message>
+      ) : (
+        <Message
+          action={
+            inControl ? (
+              <button type="button" className="btn sm" onClick={() => setDeclaring(true)}>
+                Declare anew…
+              </button>
+            ) : undefined
+          }
+        >
+          <b>{model.name} stands.</b>{' '}
+          {run
+            ? `${run.sequenceName} ${run.phase === 'paused' ? 'is paused' : 'is under way'}.`
+            : inControl
+              ? 'Hold a button to move; let go to stop.'
+              : 'Take control to move it.'}
+        </Message>
+      )}
+      <DeclareDialog open={declaring} onClose={() => setDeclaring(false)} model={model} />
+    </>
+  );
+}
+
+function MovingLine({ model, stopping }: { model: ArmModel; stopping: boolean }) {
+  const hold = useArmState((state) => state?.hold ?? null);
+  const still = useTelemetry((t) => {
+    if (!t) return null;
+    let most = { joint: -1, share: 0, travel: 0 };
+    for (const [i, joint] of model.joints.entries()) {
+      const travel = Math.abs((t.stopAt[i] ?? 0) - (t.q[i] ?? 0));
+      const share = travel / (joint.limits.upper - joint.limits.lower);
+      if (share > most.share) most = { joint: i, share, travel };
+    }
+    const joint = model.joints[most.joint];
+    return joint ? shownValue(joint.type, most.travel) : null;
+  });
+  const motion = hold?.motion;
+  const joint = motion?.kind === 'jog' && typeof motion.axis === 'number' ? model.joints[motion.axis] : null;
+  const doing =
+    joint && motion?.kind === 'jog'
+      ? `${capital(motion.direction > 0 ? joint.words.positiveDoing : joint.words.negativeDoing)} the ${joint.name.toLowerCase()}.`
+      : motion?.kind === 'reference'
+        ? `Looking for the switch of the ${(model.joints[motion.joint]?.name ?? 'joint').toLowerCase()}.`
+        : stopping
+          ? `${model.name} comes to rest.`
+          : `${model.name} moves.`;
+  return (
+    <Message
+      kind="moving"
+      action={
+        <span className="note">
+          stop arm <kbd>Esc</kbd>
+        </span>
+      }
+    >
+      <b>{doing}</b>{' '}
+      {still ? (
+        <>
+          Let go and it stops within <span className="n">{still}</span>.
+        </>
+      ) : null}
+    </Message>
+  );
+}
+
+const capital = (text: string) => text.charAt(0).toUpperCase() + text.slice(1);

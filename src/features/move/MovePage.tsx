@@ -1,0 +1,133 @@
+import './move.css';
+import './move-more.css';
+import { useMemo, useState } from 'react';
+import type { Arm } from '../../../shared/api/resources';
+import { shownValue } from '../../../shared/arm/units';
+import { NUDGE_ANGLES, NUDGE_LENGTHS } from '../../../shared/live/client-messages';
+import { may } from '../../../shared/team/roles';
+import { usePoses } from '../../api/poses';
+import { LockIcon } from '../../components/icons';
+import { Segmented } from '../../components/Segmented';
+import { useArmState, useConnection, useHello, useInControl } from '../../live/use-live';
+import { ArmView } from './ArmView';
+import { BottomLine } from './BottomLine';
+import { CeilingControl } from './CeilingControl';
+import { GamepadHold } from './GamepadHold';
+import { GripperRow } from './GripperRow';
+import { JointRow } from './JointRow';
+import { GoToDialog } from './JointValuesDialog';
+import { RecentPoses } from './RecentPoses';
+import { ReferenceButton } from './ReferencePanel';
+
+/** Why the hold buttons cannot be used now, in a word or two; null when they can. */
+function useReason(): string | null {
+  const connection = useConnection();
+  const role = useHello()?.you.role ?? 'observer';
+  const inControl = useInControl();
+  const motors = useArmState((state) => state?.motors ?? 'resting');
+  const someEnergised = useArmState((state) => state?.energised.some(Boolean) ?? false);
+  const fault = useArmState((state) => state?.fault !== null && state !== null);
+  const running = useArmState((state) => state?.run !== null && state !== null);
+  if (connection !== 'live') return 'no link';
+  if (!may(role, 'arm.control')) return 'watching';
+  if (motors === 'energising') return 'waiting';
+  if (!someEnergised) return 'resting';
+  if (fault) return 'fault';
+  if (!inControl) return 'no control';
+  if (running) return 'a run is on';
+  return null;
+}
+
+/** Which nudge is chosen: an index into the nudge sizes, or "moves while held". */
+type Press = 'held' | 0 | 1 | 2;
+
+export function MovePage({ arm }: { arm: Arm }) {
+  const { model } = arm;
+  const reason = useReason();
+  const moving = useArmState((state) => state?.motors === 'moving' || state?.motors === 'stopping');
+  const [press, setPress] = useState<Press>('held');
+  const [goingTo, setGoingTo] = useState(false);
+  const poses = usePoses(arm.id).data;
+  const poseValues = useMemo(
+    () =>
+      model.joints.map((_, i) =>
+        (poses ?? []).flatMap((pose) => (pose.q[i] === undefined ? [] : [pose.q[i]])),
+      ),
+    [model, poses],
+  );
+  const sizes = (type: 'revolute' | 'prismatic') => (type === 'revolute' ? NUDGE_ANGLES : NUDGE_LENGTHS);
+  const nudgeOf = (type: 'revolute' | 'prismatic') => {
+    if (press === 'held') return null;
+    const list = sizes(type);
+    return list[Math.min(press, list.length - 1)] ?? null;
+  };
+  const locked = reason !== null || moving;
+  const lockText = moving ? 'locked while moving' : reason;
+  const sliding = model.joints.some((joint) => joint.type === 'prismatic');
+  return (
+    <main className="sheet move">
+      <h1 className="vh">Move {model.name}</h1>
+      <ArmView model={model} />
+      <RecentPoses arm={arm} />
+      <section className="pane joints" aria-label="Joints">
+        <div className="ctl">
+          <div className="c2">
+            <div className="lab">
+              <span>Each press</span>
+              {locked && (
+                <span className="lk">
+                  <LockIcon />
+                  {lockText}
+                </span>
+              )}
+            </div>
+            <Segmented<Press>
+              label="Each press"
+              locked={locked}
+              value={press}
+              onChange={setPress}
+              options={[
+                { value: 'held', label: <span>moves while held</span>, className: 'pressw' },
+                ...NUDGE_ANGLES.map((size, i) => ({
+                  value: i as Press,
+                  className: 'n',
+                  label: `${shownValue('revolute', size, i === 0 ? 1 : 0)}${sliding && NUDGE_LENGTHS[i] ? ` / ${shownValue('prismatic', NUDGE_LENGTHS[i], 0)}` : ''}`,
+                })),
+              ]}
+            />
+          </div>
+          <CeilingControl reason={reason === 'a run is on' ? null : reason} moving={moving} />
+          <div className="c4">
+            <div className="lab">
+              <span>Or</span>
+            </div>
+            <div className="line">
+              <button type="button" className="btn sm" disabled={locked} onClick={() => setGoingTo(true)}>
+                Go to…
+              </button>
+              <ReferenceButton model={model} disabled={locked} />
+            </div>
+          </div>
+        </div>
+        <div className="rows">
+          {model.joints.map((joint, i) => (
+            <JointRow
+              key={joint.name}
+              joint={joint}
+              index={i}
+              reason={reason}
+              nudge={nudgeOf(joint.type)}
+              poses={poseValues[i] ?? []}
+            />
+          ))}
+          {model.gripper && <GripperRow gripper={model.gripper} reason={reason} />}
+        </div>
+        <div className="bottom">
+          <GamepadHold model={model} usable={reason === null} />
+          <BottomLine model={model} />
+        </div>
+      </section>
+      <GoToDialog open={goingTo} onClose={() => setGoingTo(false)} model={model} />
+    </main>
+  );
+}

@@ -1,0 +1,2 @@
+/** Where the arm is seen from. */
+export type View = 'corner' | 'side' | 'above';
