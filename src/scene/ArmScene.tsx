@@ -1,0 +1,91 @@
+import { Canvas, useThree } from '@react-three/fiber';
+import { useEffect, useRef, useState } from 'react';
+import type { ArmModel } from '../../shared/arm/model';
+import { Arm } from './Arm';
+import { Bench, Floor } from './Bench';
+import { CameraRig } from './CameraRig';
+import { InksContext, useReadInks } from './inks';
+import { ChainLine, ToolTrace } from './Traces';
+import type { View } from './views';
+
+/** What the scene draws from: joint values in rad and m, the gripper from 0 to 1. */
+export interface SceneSample {
+  t: number;
+  q: readonly number[];
+  stopAt: readonly number[];
+  gripper: number | null;
+  tool: { position: [number, number, number] };
+  target?: readonly number[];
+  truth?: readonly number[];
+}
+export interface SceneSource {
+  sample(): SceneSample | null;
+  /** Calls back on every new sample; returns the unsubscribe function. */
+  subscribe(listener: () => void): () => void;
+}
+
+/** Draws when there is something new to draw, and not otherwise. */
+function DrawOnSamples({ source }: { source: SceneSource }) {
+  const invalidate = useThree((three) => three.invalidate);
+  useEffect(() => source.subscribe(() => invalidate()), [source, invalidate]);
+  return null;
+}
+
+/** The arm as a drawing in three dimensions. Numbers and Stop never depend on it. */
+export default function ArmScene({
+  model,
+  view,
+  source,
+  known,
+  showTruth = false,
+}: {
+  model: ArmModel;
+  view: View;
+  source: SceneSource;
+  known: boolean;
+  showTruth?: boolean;
+}) {
+  const inks = useReadInks();
+  const [lost, setLost] = useState(false);
+  const frame = useRef<HTMLDivElement>(null);
+  return (
+    <div ref={frame} className="scene" style={{ position: 'absolute', inset: 0 }}>
+      <Canvas
+        orthographic
+        frameloop="demand"
+        dpr={[1, 1.5]}
+        camera={{ near: -10, far: 20, position: [2, -2, 2], up: [0, 0, 1] }}
+        gl={{ antialias: true, alpha: true }}
+        onCreated={({ gl }) => {
+          gl.domElement.dataset.ready = 'true';
+          gl.domElement.setAttribute(
+            'aria-label',
+            `${model.name}, drawn in three dimensions; drag to turn the view`,
+          );
+          gl.domElement.setAttribute('role', 'img');
+          gl.domElement.addEventListener('webglcontextlost', (event) => {
+            event.preventDefault();
+            setLost(true);
+          });
+          gl.domElement.addEventListener('webglcontextrestored', () => setLost(false));
+        }}
+      >
+        <InksContext.Provider value={inks}>
+          <CameraRig model={model} view={view} />
+          <DrawOnSamples source={source} />
+          <Floor />
+          <Bench objects={model.bench} />
+          <Arm model={model} source={source} known={known} />
+          <ToolTrace source={source} />
+          <ChainLine model={model} source={source} pick="target" color={inks.plan} />
+          {showTruth && <ChainLine model={model} source={source} pick="truth" color={inks.ink2} />}
+        </InksContext.Provider>
+      </Canvas>
+      {lost && (
+        <p className="stage-note" role="status">
+          <b>The picture was lost.</b> The numbers beside it are right. Load the page again to draw it.
+        </p>
+      )}
+    </div>
+  );
+}
