@@ -1,0 +1,6 @@
+import { PosesPage } from '../features/poses/PosesPage';
+import { useCurrentArm } from './use-current-arm';
+
+export function Component() {
+  return <PosesPage arm={useCurrentArm()} />;
+}
