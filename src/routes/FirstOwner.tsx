@@ -5,9 +5,11 @@ import { FirstOwner } from '../../shared/api/resources';
 import { errorText } from '../api/client';
 import { useFirstOwner, useSession } from '../api/session';
 import { Field } from '../components/Field';
+import { placeErrors } from '../components/form-errors';
 import { Message } from '../components/Message';
 import { TitleBlock } from '../features/session/TitleBlock';
 
+/** An empty workshop begins with its owner, who proves by the code to have started the server. */
 export function Component() {
   const session = useSession().data;
   const begin = useFirstOwner();
@@ -18,38 +20,48 @@ export function Component() {
   });
   if (session && !session.setupNeeded && !begin.isPending) return <Navigate to="/" replace />;
   const { errors } = form.formState;
+  const placed = begin.isError && Object.keys(errors).length > 0;
   return (
-    <TitleBlock title="A new workshop">
+    <TitleBlock
+      sheet="First owner"
+      workshop=""
+      intro="This workshop has nobody yet. The first person in owns it and invites the others."
+    >
       <form
         noValidate
         onSubmit={form.handleSubmit((values) =>
-          begin.mutate(values, { onSuccess: () => void navigate('/', { replace: true }) }),
+          begin.mutate(values, {
+            onSuccess: () => void navigate('/', { replace: true }),
+            onError: (error) => void placeErrors(form, error),
+          }),
         )}
       >
-        <h1>First owner</h1>
+        <h1>Begin as the first owner</h1>
         <Field
           label="One-time code"
-          help="The server printed it when it started."
+          help="Printed in the terminal when the server started."
           autoComplete="off"
-          error={errors.code && 'the code from the terminal is needed'}
+          spellCheck={false}
+          error={errors.code && (errors.code.type === 'too_small' ? 'Type the code.' : errors.code.message)}
           {...form.register('code')}
         />
         <Field
           label="Name of the workshop"
-          error={errors.workshop && 'a name is needed'}
+          autoComplete="organization"
+          error={errors.workshop && 'Give the workshop a name of up to 60 characters.'}
           {...form.register('workshop')}
         />
         <Field
           label="Your name"
           autoComplete="name"
-          error={errors.name && 'your name is needed'}
+          error={errors.name && 'Give the name others will see, up to 60 characters.'}
           {...form.register('name')}
         />
         <Field
           label="E-mail"
           type="email"
           autoComplete="username"
-          error={errors.email && 'an e-mail address is needed'}
+          error={errors.email && 'Type your e-mail address, like ada@tidemill.example.'}
           {...form.register('email')}
         />
         <Field
@@ -60,9 +72,9 @@ export function Component() {
           error={errors.password?.message}
           {...form.register('password')}
         />
-        {begin.isError && <Message kind="fault">{errorText(begin.error)}</Message>}
+        {begin.isError && !placed && <Message kind="fault">{errorText(begin.error)}</Message>}
         <button type="submit" className="btn ink" disabled={begin.isPending}>
-          Make me the owner
+          {begin.isPending ? 'Making the workshop…' : 'Make me the owner'}
         </button>
       </form>
     </TitleBlock>

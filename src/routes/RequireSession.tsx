@@ -6,11 +6,12 @@ import { Message } from '../components/Message';
 /** Strangers go to sign in and come back to where they wanted to be; an empty workshop begins with its owner. */
 export function RequireSession() {
   const session = useSession();
-  const { pathname } = useLocation();
+  const { pathname, search } = useLocation();
   if (session.isPending) return <p className="paper">Opening Elbowroom…</p>;
-  if (session.isError)
+  // Only when nothing is known: a server that is away for a moment must not take Stop off the page.
+  if (!session.data)
     return (
-      <div className="paper">
+      <main className="paper">
         <Message
           kind="fault"
           action={
@@ -21,9 +22,9 @@ export function RequireSession() {
         >
           {errorText(session.error)}
         </Message>
-      </div>
+      </main>
     );
   if (session.data.setupNeeded) return <Navigate to="/first-owner" replace />;
-  if (!session.data.you) return <Navigate to={`/sign-in?to=${encodeURIComponent(pathname)}`} replace />;
+  if (!session.data.you) return <Navigate to={`/sign-in?to=${encodeURIComponent(pathname + search)}`} replace />;
   return <Outlet />;
 }

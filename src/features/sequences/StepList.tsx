@@ -68,7 +68,7 @@ export function StepList(props: Props) {
       'Alt+ArrowDown': () => set(shift(draft.steps, id, 1)),
       'Alt+ArrowRight': () => set(moveIn(draft.steps, id)),
       'Alt+ArrowLeft': () => set(moveOut(draft.steps, id)),
-      Delete: () => set(remove(draft.steps, id)),
+      ['Delete']: () => set(remove(draft.steps, id)),
       'Ctrl+d': () => set(insertAfter(draft.steps, id, copyOf(row.step, newId))),
     };
     const run =

@@ -78,10 +78,8 @@ function depthOf(step: Step): number {
 export function moveIn(steps: Step[], id: string): Step[] {
   const row = rowOf(steps, id);
   if (!row || row.index === 0 || row.depth + 1 + depthOf(row.step) > MAX_NESTING) return steps;
-  const list =
-    row.parentId === null
-      ? steps
-      : (rowOf(steps, row.parentId)?.step as Extract<Step, { kind: 'again' }>).steps;
+  const parent = row.parentId === null ? null : rowOf(steps, row.parentId)?.step;
+  const list = parent?.kind === 'again' ? parent.steps : steps;
   const above = list[row.index - 1];
   if (above?.kind !== 'again') return steps;
   return within(remove(steps, id), above.id, (inside) => [...inside, row.step]);
