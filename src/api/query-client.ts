@@ -1,6 +1,10 @@
 import { QueryClient } from '@tanstack/react-query';
-import { whenSignedOut } from './client';
+import { ApiError, whenSignedOut } from './client';
 import { sessionKey } from './session';
+
+/** Once more when the server was away or failed; what it refused it would refuse again. */
+const retry = (failures: number, error: Error) =>
+  failures < 1 && (!(error instanceof ApiError) || error.status === 0 || error.status >= 500);
 
 /**
  * For things at rest. Live arm state has its own store, and no motion order ever travels as a mutation:
@@ -8,7 +12,7 @@ import { sessionKey } from './session';
  */
 export const queryClient = new QueryClient({
   defaultOptions: {
-    queries: { refetchOnWindowFocus: false, retry: 1, staleTime: 5_000, networkMode: 'always' },
+    queries: { refetchOnWindowFocus: false, retry, staleTime: 5_000, networkMode: 'always' },
     mutations: { retry: false, networkMode: 'always' },
   },
 });

@@ -15,19 +15,23 @@ function useBegin<Body>(path: string) {
   const client = useQueryClient();
   return useMutation({
     mutationFn: (body: Body) => api.post(path, body, SessionInfo),
-    onSuccess: (session) => client.setQueryData(sessionKey, session),
+    onSuccess: (session) => {
+      // What the person before was shown is not for the next one.
+      client.removeQueries({ predicate: ({ queryKey }) => queryKey[0] !== sessionKey[0] });
+      client.setQueryData(sessionKey, session);
+    },
   });
 }
 export const useSignIn = () => useBegin<z.input<typeof SignIn>>('/session');
 export const useFirstOwner = () => useBegin<z.input<typeof FirstOwner>>('/setup');
 export const useAcceptInvitation = () => useBegin<z.input<typeof AcceptInvitation>>('/invitations/accept');
 
-/** Ends this person's sessions on every device. */
+/** Ends this person's sessions on every device. A failure leaves everything as it was, for the screen to say. */
 export function useSignOut() {
   const client = useQueryClient();
   return useMutation({
     mutationFn: () => api.delete('/session'),
-    onSettled: () => {
+    onSuccess: () => {
       client.clear();
       location.assign('/sign-in');
     },

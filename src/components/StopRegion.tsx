@@ -12,11 +12,27 @@ export function StopRegion({
   state,
   onStop,
   label = 'Stop arm',
+  nothing = false,
 }: {
   state: keyof typeof SAYS;
   onStop: () => void;
   label?: string;
+  /** There is no arm at all. */
+  nothing?: boolean;
 }) {
+  if (nothing)
+    return (
+      <section className="stopcell" aria-label="Stop">
+        <div className="stopsay" role="status">
+          <b className="ss">no arm</b>
+          <span>Nothing to stop yet. Build or choose an arm.</span>
+        </div>
+        <button type="button" className="stop none" disabled>
+          <i />
+          <b>{label}</b>
+        </button>
+      </section>
+    );
   return (
     <section className="stopcell" aria-label="Stop">
       <div className={`stopsay ${state === 'noAnswer' ? 'lost' : ''}`} role="status">

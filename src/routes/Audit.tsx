@@ -1,69 +1,103 @@
+import '../features/team/team.css';
 import { useState } from 'react';
-import { errorText } from '../api/client';
+import { may } from '../../shared/team/roles';
+import { useSession } from '../api/session';
 import { useAudit } from '../api/team';
-import { Message } from '../components/Message';
+import { QueryState } from '../components/QueryState';
+import { useTitle } from '../components/use-title';
 import { when } from '../components/when';
+import { actWords, mentions } from '../features/team/act-words';
+import { NotForYou } from '../features/team/NotForYou';
 
 export function Component() {
-  const audit = useAudit();
-  const [filter, setFilter] = useState('');
-  const wanted = filter.trim().toLowerCase();
-  const entries = (audit.data?.pages.flat() ?? []).filter(
-    (e) =>
-      !wanted || `${e.who} ${e.act} ${e.arm ?? ''} ${e.detail} ${e.result}`.toLowerCase().includes(wanted),
+  const session = useSession().data;
+  useTitle('Audit', session?.workshop);
+  return may(session?.you?.role ?? 'observer', 'audit.see') ? (
+    <AuditLog />
+  ) : (
+    <NotForYou title="Audit" needs="audit.see" />
   );
+}
+
+function AuditLog() {
+  const audit = useAudit();
+  const [typed, setTyped] = useState('');
+  const all = audit.data?.pages.flat() ?? [];
+  const entries = all.filter((entry) => mentions(entry, typed));
+  const filtered = typed.trim() !== '';
   return (
     <main className="sheet listpage">
       <div className="bar">
         <h1 className="title">Audit</h1>
-        <div className="entry text" style={{ width: 260 }}>
+        <div className="entry text find">
           <input
+            type="search"
             aria-label="Find in the log"
             placeholder="Find…"
-            value={filter}
-            onChange={(e) => setFilter(e.target.value)}
+            value={typed}
+            onChange={(event) => setTyped(event.target.value)}
           />
         </div>
-        <span className="quiet small">Who did what, newest first. Entries are never changed.</span>
+        <span className="quiet small" role="status">
+          {filtered
+            ? `${entries.length} of the ${all.length} newest entries`
+            : 'Who did what, newest first. Entries are never changed.'}
+        </span>
       </div>
-      <div className="scroll">
-        {audit.isError && <Message kind="fault">{errorText(audit.error)}</Message>}
-        <table>
-          <thead>
-            <tr>
-              <th>When</th>
-              <th>Who</th>
-              <th>Act</th>
-              <th>Arm</th>
-              <th>Detail</th>
-              <th className="wide-only">Result</th>
-            </tr>
-          </thead>
-          <tbody>
-            {entries.map((entry) => (
-              <tr key={entry.seq}>
-                <td className="n">{when(entry.atMs)}</td>
-                <td>{entry.who}</td>
-                <td>{entry.act}</td>
-                <td>{entry.arm ?? ''}</td>
-                <td>{entry.detail}</td>
-                <td className="wide-only">{entry.result}</td>
+      {/* biome-ignore lint/a11y/noNoninteractiveTabindex: a region that scrolls has to be reachable by keyboard */}
+      <section className="scroll" tabIndex={0} aria-label="Entries">
+        <QueryState
+          query={audit}
+          waiting="Opening the log…"
+          empty={all.length === 0 ? 'Nothing has happened yet.' : null}
+        />
+        {entries.length > 0 && (
+          <table className="audit">
+            <thead>
+              <tr>
+                <th>When</th>
+                <th>Who</th>
+                <th>Did</th>
+                <th>Arm</th>
+                <th>What exactly</th>
+                <th>Result</th>
+                <th>From</th>
               </tr>
-            ))}
-          </tbody>
-        </table>
-        {entries.length === 0 && !audit.isPending && <p className="empty quiet">Nothing matches.</p>}
-        {audit.hasNextPage && (
-          <button
-            type="button"
-            className="btn"
-            style={{ marginTop: 12 }}
-            onClick={() => void audit.fetchNextPage()}
-          >
-            Earlier entries
-          </button>
+            </thead>
+            <tbody>
+              {entries.map(({ seq, atMs, who, act, arm, detail, result, address }) => (
+                <tr key={seq}>
+                  <td className="at">{when(atMs)}</td>
+                  <td>{who}</td>
+                  <td>{actWords(act)}</td>
+                  <td>{arm}</td>
+                  <td className="detail">{detail}</td>
+                  <td>{result === 'done' ? <span className="quiet">done</span> : <b>{result}</b>}</td>
+                  <td className="n quiet">{address}</td>
+                </tr>
+              ))}
+            </tbody>
+          </table>
         )}
-      </div>
+        {filtered && all.length > 0 && entries.length === 0 && (
+          <p className="empty quiet">
+            No entry among the {all.length} newest mentions that.
+            {audit.hasNextPage && ' Look further back with Earlier entries.'}
+          </p>
+        )}
+        {audit.hasNextPage && (
+          <p className="earlier">
+            <button
+              type="button"
+              className="btn"
+              disabled={audit.isFetchingNextPage}
+              onClick={() => void audit.fetchNextPage()}
+            >
+              {audit.isFetchingNextPage ? 'Looking…' : 'Earlier entries'}
+            </button>
+          </p>
+        )}
+      </section>
     </main>
   );
 }

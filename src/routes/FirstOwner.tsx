@@ -2,7 +2,6 @@ import { zodResolver } from '@hookform/resolvers/zod';
 import { useForm } from 'react-hook-form';
 import { Navigate, useNavigate } from 'react-router-dom';
 import { FirstOwner } from '../../shared/api/resources';
-import { errorText } from '../api/client';
 import { useFirstOwner, useSession } from '../api/session';
 import { Field } from '../components/Field';
 import { placeErrors } from '../components/form-errors';
@@ -20,7 +19,6 @@ export function Component() {
   });
   if (session && !session.setupNeeded && !begin.isPending) return <Navigate to="/" replace />;
   const { errors } = form.formState;
-  const placed = begin.isError && Object.keys(errors).length > 0;
   return (
     <TitleBlock
       sheet="First owner"
@@ -32,7 +30,7 @@ export function Component() {
         onSubmit={form.handleSubmit((values) =>
           begin.mutate(values, {
             onSuccess: () => void navigate('/', { replace: true }),
-            onError: (error) => void placeErrors(form, error),
+            onError: (error) => placeErrors(form, error),
           }),
         )}
       >
@@ -42,7 +40,7 @@ export function Component() {
           help="Printed in the terminal when the server started."
           autoComplete="off"
           spellCheck={false}
-          error={errors.code && (errors.code.type === 'too_small' ? 'Type the code.' : errors.code.message)}
+          error={errors.code && (errors.code.type === 'server' ? errors.code.message : 'Type the code.')}
           {...form.register('code')}
         />
         <Field
@@ -72,7 +70,7 @@ export function Component() {
           error={errors.password?.message}
           {...form.register('password')}
         />
-        {begin.isError && !placed && <Message kind="fault">{errorText(begin.error)}</Message>}
+        {errors.root?.server && <Message kind="fault">{errors.root.server.message}</Message>}
         <button type="submit" className="btn ink" disabled={begin.isPending}>
           {begin.isPending ? 'Making the workshop…' : 'Make me the owner'}
         </button>

@@ -3,7 +3,6 @@ import { useForm } from 'react-hook-form';
 import { useLocation, useNavigate } from 'react-router-dom';
 import { z } from 'zod';
 import { NewPassword } from '../../shared/api/resources';
-import { errorText } from '../api/client';
 import { useAcceptInvitation, useSession } from '../api/session';
 import { Field } from '../components/Field';
 import { placeErrors } from '../components/form-errors';
@@ -23,7 +22,7 @@ export function Component() {
   const navigate = useNavigate();
   const form = useForm({ resolver: zodResolver(Form), defaultValues: { password: '' } });
   const cut = token.length < SHORTEST_TOKEN;
-  const passwordError = form.formState.errors.password;
+  const { errors } = form.formState;
   return (
     <TitleBlock
       sheet="Invitation"
@@ -37,15 +36,13 @@ export function Component() {
             { token, password },
             {
               onSuccess: () => void navigate('/', { replace: true }),
-              onError: (error) => void placeErrors(form, error),
+              onError: (error) => placeErrors(form, error),
             },
           ),
         )}
       >
         <h1>Choose a password and join</h1>
-        {cut && (
-          <Message kind="fault">The link is not complete. Open it again from the mail, whole.</Message>
-        )}
+        {cut && <Message kind="fault">The link is not complete. Open it again from the mail, whole.</Message>}
         {session?.you && !cut && (
           <Message>
             {session.you.name} is signed in here. Joining signs the invited person in instead.
@@ -56,10 +53,10 @@ export function Component() {
           type="password"
           autoComplete="new-password"
           help="At least 10 characters; pasting is fine."
-          error={passwordError?.message}
+          error={errors.password?.message}
           {...form.register('password')}
         />
-        {accept.isError && !passwordError && <Message kind="fault">{errorText(accept.error)}</Message>}
+        {errors.root?.server && <Message kind="fault">{errors.root.server.message}</Message>}
         <button type="submit" className="btn ink" disabled={accept.isPending || cut}>
           {accept.isPending ? 'Joining…' : 'Join'}
         </button>

@@ -25,6 +25,7 @@ export function RequireSession() {
       </main>
     );
   if (session.data.setupNeeded) return <Navigate to="/first-owner" replace />;
-  if (!session.data.you) return <Navigate to={`/sign-in?to=${encodeURIComponent(pathname + search)}`} replace />;
+  if (!session.data.you)
+    return <Navigate to={`/sign-in?to=${encodeURIComponent(pathname + search)}`} replace />;
   return <Outlet />;
 }

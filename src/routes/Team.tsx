@@ -1,193 +1,146 @@
-import { zodResolver } from '@hookform/resolvers/zod';
+import '../features/team/team.css';
 import { useState } from 'react';
-import { useForm } from 'react-hook-form';
-import { NewInvitation } from '../../shared/api/resources';
-import { may, ROLES, type Role } from '../../shared/team/roles';
-import { errorText } from '../api/client';
+import { Link } from 'react-router-dom';
+import type { Person } from '../../shared/api/resources';
+import { may } from '../../shared/team/roles';
 import { useSession } from '../api/session';
-import { useChangePerson, useInvitations, useInvite, usePeople, useWithdrawInvitation } from '../api/team';
-import { Dialog } from '../components/Dialog';
-import { Field, SelectField } from '../components/Field';
+import { usePeople } from '../api/team';
 import { Message } from '../components/Message';
-import { ago, when } from '../components/when';
-import { toast } from '../features/shell/toast';
+import { QueryState } from '../components/QueryState';
+import { useTitle } from '../components/use-title';
+import { when } from '../components/when';
+import { DisableDialog } from '../features/team/DisableDialog';
+import { InviteDialog } from '../features/team/InviteDialog';
+import { PendingInvitations } from '../features/team/PendingInvitations';
+import { RoleDialog } from '../features/team/RoleDialog';
+import { ROLE_DOES, whyNotDisable } from '../features/team/role-rules';
 
-/** What each role adds to the one before it. */
-const DOES: Record<Role, string> = {
-  observer: 'watches, and can always stop the arm',
-  operator: 'takes control, brings the arm up, jogs, runs approved sequences',
-  teacher: 'teaches poses and sequences, rehearses, approves',
-  builder: 'describes the arm, its limits and drives; acknowledges hard faults',
-  owner: 'team, settings, deleting arms',
-};
+type Asking = { what: 'role' | 'disable'; person: Person } | { what: 'invite' } | null;
 
 export function Component() {
-  const you = useSession().data?.you;
+  const session = useSession().data;
+  useTitle('Team', session?.workshop);
   const people = usePeople();
-  const manages = may(you?.role ?? 'observer', 'team.manage');
-  const invitations = useInvitations(manages).data ?? [];
-  const change = useChangePerson();
-  const withdraw = useWithdrawInvitation();
-  const [inviting, setInviting] = useState(false);
+  const [asking, setAsking] = useState<Asking>(null);
+  const [invited, setInvited] = useState<string | null>(null);
+  const you = session?.you;
+  if (!you) return null;
+  const manages = may(you.role, 'team.manage');
+  const close = () => setAsking(null);
   return (
     <main className="sheet listpage">
       <div className="bar">
         <h1 className="title">Team</h1>
         <span className="quiet small">
-          {manages ? 'Each role includes the ones above it.' : 'The owner changes roles.'}
+          {manages ? 'Who may do what here. Anyone may always stop an arm.' : 'The owner changes roles.'}
         </span>
         {manages && (
-          <button
-            type="button"
-            className="btn"
-            style={{ marginLeft: 'auto' }}
-            onClick={() => setInviting(true)}
-          >
+          <button type="button" className="btn end" onClick={() => setAsking({ what: 'invite' })}>
             Invite somebody…
           </button>
         )}
       </div>
-      <div className="scroll">
-        {people.isError && <Message kind="fault">{errorText(people.error)}</Message>}
-        {change.isError && <Message kind="fault">{errorText(change.error)}</Message>}
-        <table>
-          <thead>
-            <tr>
-              <th>Name</th>
-              <th className="wide-only">E-mail</th>
-              <th>Role</th>
-              <th className="wide-only">Does</th>
-              <th className="wide-only">Last here</th>
-              {manages && <th>Account</th>}
-            </tr>
-          </thead>
-          <tbody>
-            {people.data?.map((person) => (
-              <tr key={person.id} className={person.disabled ? 'ended' : ''}>
-                <td>
-                  <b>{person.name}</b>
-                  {person.id === you?.id ? ' (you)' : ''}
-                </td>
-                <td className="wide-only">{person.email}</td>
-                <td>
-                  {manages ? (
-                    <select
-                      className="btn sm"
-                      aria-label={`Role of ${person.name}`}
-                      value={person.role}
-                      disabled={change.isPending}
-                      onChange={(event) => change.mutate({ id: person.id, role: event.target.value as Role })}
-                    >
-                      {ROLES.map((role) => (
-                        <option key={role}>{role}</option>
-                      ))}
-                    </select>
-                  ) : (
-                    person.role
-                  )}
-                </td>
-                <td className="wide-only quiet">{DOES[person.role]}</td>
-                <td className="wide-only">{person.lastSeenMs ? when(person.lastSeenMs) : 'never'}</td>
-                {manages && (
-                  <td className="act">
-                    <button
-                      type="button"
-                      className="btn sm"
-                      disabled={change.isPending || person.id === you?.id}
-                      onClick={() => change.mutate({ id: person.id, disabled: !person.disabled })}
-                    >
-                      {person.disabled ? 'Let in again' : 'Disable'}
-                    </button>
-                  </td>
-                )}
-              </tr>
-            ))}
-          </tbody>
-        </table>
-        {invitations.length > 0 && (
-          <>
-            <h2 className="h2" style={{ marginTop: 24 }}>
-              Invitations waiting
-            </h2>
-            <table>
-              <tbody>
-                {invitations.map((invitation) => (
-                  <tr key={invitation.id}>
-                    <td>
-                      <b>{invitation.name}</b> {invitation.email}
-                    </td>
-                    <td>{invitation.role}</td>
-                    <td className="wide-only quiet">
-                      by {invitation.invitedBy}, {ago(invitation.createdAtMs)}; runs out{' '}
-                      {when(invitation.expiresAtMs)}
-                    </td>
-                    <td className="act">
-                      <button type="button" className="btn sm" onClick={() => withdraw.mutate(invitation.id)}>
-                        Withdraw
-                      </button>
-                    </td>
-                  </tr>
-                ))}
-              </tbody>
-            </table>
-          </>
+      <div className="scroll stack">
+        {invited && (
+          <Message>
+            {invited} is invited. If no mail server is set, the link waits in the{' '}
+            <Link to="/outbox">Outbox</Link>.
+          </Message>
         )}
+        <QueryState query={people} waiting="Looking up the team…" empty={null} />
+        {people.data && <PeopleTable people={people.data} you={you} manages={manages} onAsk={setAsking} />}
+        {manages && <PendingInvitations />}
       </div>
-      <InviteDialog open={inviting} onClose={() => setInviting(false)} />
+      {asking?.what === 'role' && (
+        <RoleDialog person={asking.person} people={people.data ?? []} you={you} onClose={close} />
+      )}
+      {asking?.what === 'disable' && <DisableDialog person={asking.person} onClose={close} />}
+      {asking?.what === 'invite' && (
+        <InviteDialog
+          onClose={close}
+          onInvited={(name) => {
+            setInvited(name);
+            close();
+          }}
+        />
+      )}
     </main>
   );
 }
 
-function InviteDialog({ open, onClose }: { open: boolean; onClose: () => void }) {
-  const invite = useInvite();
-  const form = useForm({
-    resolver: zodResolver(NewInvitation),
-    defaultValues: { email: '', name: '', role: 'operator' as Role },
-  });
-  const role = form.watch('role');
-  const { errors } = form.formState;
+function PeopleTable({
+  people,
+  you,
+  manages,
+  onAsk,
+}: {
+  people: readonly Person[];
+  you: Person;
+  manages: boolean;
+  onAsk: (asking: Asking) => void;
+}) {
   return (
-    <Dialog open={open} onClose={onClose} title="Invite somebody">
-      <form
-        className="stack"
-        noValidate
-        onSubmit={form.handleSubmit((values) =>
-          invite.mutate(values, {
-            onSuccess: () => {
-              toast('Invited. Without a mail server the mail waits in the Outbox.');
-              form.reset();
-              onClose();
-            },
-          }),
-        )}
-      >
-        <Field label="Name" error={errors.name && 'a name is needed'} {...form.register('name')} />
-        <Field
-          label="E-mail"
-          type="email"
-          error={errors.email && 'an e-mail address is needed'}
-          {...form.register('email')}
-        />
-        <SelectField
-          label="Role"
-          value={role}
-          help={DOES[role]}
-          onChange={(value) => form.setValue('role', value as Role)}
-        >
-          {ROLES.map((r) => (
-            <option key={r}>{r}</option>
-          ))}
-        </SelectField>
-        {invite.isError && <Message kind="fault">{errorText(invite.error)}</Message>}
-        <div className="acts">
-          <button type="button" className="btn" onClick={onClose}>
-            Cancel
-          </button>
-          <button type="submit" className="btn ink" disabled={invite.isPending}>
-            Send invitation
-          </button>
-        </div>
-      </form>
-    </Dialog>
+    <table className="people">
+      <thead>
+        <tr>
+          <th>Name</th>
+          <th>Role</th>
+          <th className="wide-only">Last here</th>
+          {manages && <th>Account</th>}
+        </tr>
+      </thead>
+      <tbody>
+        {people.map((person) => {
+          const { id, name, email, role, disabled, lastSeenMs } = person;
+          const whyNot = whyNotDisable(person, people, you.id);
+          return (
+            <tr key={id}>
+              <td className="who">
+                <b>
+                  {name}
+                  {id === you.id && <span className="quiet"> (you)</span>}
+                </b>
+                <span className="note">{email}</span>
+              </td>
+              <td>
+                <span className="role">
+                  {manages ? (
+                    <button
+                      type="button"
+                      className="btn sm"
+                      aria-label={`Role of ${name}: ${role}, change`}
+                      onClick={() => onAsk({ what: 'role', person })}
+                    >
+                      {role}…
+                    </button>
+                  ) : (
+                    <b>{role}</b>
+                  )}
+                  <span className="small quiet wide-only">{ROLE_DOES[role]}</span>
+                </span>
+              </td>
+              <td className="wide-only">{lastSeenMs ? when(lastSeenMs) : 'never'}</td>
+              {manages && (
+                <td className="account">
+                  {disabled && <span className="tag">disabled</span>}
+                  {whyNot && !disabled ? (
+                    <span className="note">{id === you.id ? 'yours' : whyNot}</span>
+                  ) : (
+                    <button
+                      type="button"
+                      className="btn sm"
+                      aria-label={disabled ? `Let ${name} in again` : `Disable ${name}`}
+                      onClick={() => onAsk({ what: 'disable', person })}
+                    >
+                      {disabled ? 'Let in…' : 'Disable…'}
+                    </button>
+                  )}
+                </td>
+              )}
+            </tr>
+          );
+        })}
+      </tbody>
+    </table>
   );
 }

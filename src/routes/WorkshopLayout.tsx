@@ -1,26 +1,18 @@
-import { useState } from 'react';
 import { Outlet } from 'react-router-dom';
 import { may } from '../../shared/team/roles';
-import { api } from '../api/client';
+import { useArms } from '../api/arms';
 import { useSession } from '../api/session';
 import { StopRegion } from '../components/StopRegion';
+import { useStopEveryArm } from '../features/arms/use-stop-every-arm';
 import { Header } from '../features/shell/Header';
 import { useEscapeStops } from '../live/use-live';
-
-type StopState = 'ready' | 'sent' | 'acknowledged' | 'noAnswer';
 
 /** Around the workshop's sheets. Stop here stops every arm. */
 export function Component() {
   const role = useSession().data?.you?.role ?? 'observer';
-  const [stop, setStop] = useState<StopState>('ready');
-  const stopAll = () => {
-    setStop('sent');
-    void api.post('/stop', {}, null).then(
-      () => setStop('acknowledged'),
-      () => setStop('noAnswer'),
-    );
-  };
-  useEscapeStops(stopAll);
+  const arms = useArms().data;
+  const { word, stop } = useStopEveryArm();
+  useEscapeStops(stop);
   return (
     <div className="page">
       <Header
@@ -34,7 +26,7 @@ export function Component() {
       />
       <Outlet />
       <footer className="strip only-stop" role="contentinfo" aria-label="Stop every arm">
-        <StopRegion state={stop} onStop={stopAll} label="Stop every arm" />
+        <StopRegion state={word} onStop={stop} label="Stop every arm" nothing={arms?.length === 0} />
       </footer>
     </div>
   );

@@ -1,9 +1,11 @@
 import { DropdownMenu } from 'radix-ui';
 import { useState } from 'react';
 import { Link } from 'react-router-dom';
+import { errorText } from '../../api/client';
 import { useSession, useSignOut } from '../../api/session';
 import { ChevronDown } from '../../components/icons';
 import { currentTheme, toggleTheme } from '../../components/theme';
+import { toast } from './toast';
 
 export function ThemeButton() {
   const [theme, setTheme] = useState(currentTheme);
@@ -32,7 +34,11 @@ export function AccountMenu() {
           <DropdownMenu.Item asChild>
             <Link to="/settings">Settings</Link>
           </DropdownMenu.Item>
-          <DropdownMenu.Item onSelect={() => signOut.mutate()}>Sign out on all devices</DropdownMenu.Item>
+          <DropdownMenu.Item
+            onSelect={() => signOut.mutate(undefined, { onError: (error) => toast(errorText(error)) })}
+          >
+            Sign out everywhere
+          </DropdownMenu.Item>
         </DropdownMenu.Content>
       </DropdownMenu.Portal>
     </DropdownMenu.Root>
