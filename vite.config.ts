@@ -11,7 +11,8 @@ export default defineConfig({
     strictPort: true,
     proxy: { '/api': { target: api, ws: true } },
   },
-  build: { outDir: 'dist/client', chunkSizeWarningLimit: 1200, sourcemap: true },
+  // Fonts are files of their own: the content security policy allows no data: fonts.
+  build: { outDir: 'dist/client', chunkSizeWarningLimit: 1200, sourcemap: true, assetsInlineLimit: 0 },
   test: {
     reporters: ['default', './tests/support/plain-reporter.ts'],
     include: ['tests/{unit,reference,integration,simulation}/**/*.test.{ts,tsx}'],

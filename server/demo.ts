@@ -21,10 +21,10 @@ const TEAM: { name: string; role: Role }[] = [
 const POSES: [name: string, degrees: [number, number, number, number], gripper: number, tags: string[]][] = [
   ['Perch', [0, 100, -125, -65], 1, ['rest']],
   ['Hand clear', [0, 80, -85, -85], 1, ['rest']],
-  ['Above tray', [18.4, 52, -78, -64], 1, ['tray']],
-  ['In tray A1', [18.4, 38, -76, -52], 0.62, ['tray']],
-  ['Above scale', [-34.7, 55, -84, -61], 0.36, ['scale']],
-  ['On scale', [-34.7, 41, -82, -49], 0.36, ['scale']],
+  ['Above tray', [-18.4, 52, -78, -64], 1, ['tray']],
+  ['In tray A1', [-18.4, 38, -76, -52], 0.62, ['tray']],
+  ['Above scale', [34.7, 55, -84, -61], 0.36, ['scale']],
+  ['On scale', [34.7, 41, -82, -49], 0.36, ['scale']],
 ];
 
 export interface DemoSignIn {

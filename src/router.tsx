@@ -6,6 +6,7 @@ import { RouteError } from './routes/RouteError';
 export const router = createBrowserRouter([
   {
     errorElement: <RouteError />,
+    hydrateFallbackElement: <p className="paper">Opening Elbowroom…</p>,
     children: [
       { path: '/sign-in', lazy: () => import('./routes/SignIn') },
       { path: '/first-owner', lazy: () => import('./routes/FirstOwner') },

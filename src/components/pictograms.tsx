@@ -7,7 +7,7 @@ const joint = { r: 3.2, fill: 'var(--er-card)' } as const;
 
 const PICTURES: Record<JointWords['picture'] | 'grip', { positive: ReactNode; negative: ReactNode }> = {
   turn: {
-    positive: (
+    negative: (
       <>
         <circle cx="20" cy="23" r="3.4" />
         <path d="M20 19.5 27 5" strokeDasharray="2 3" />
@@ -15,7 +15,7 @@ const PICTURES: Record<JointWords['picture'] | 'grip', { positive: ReactNode; ne
         <path d="M5.8 15.2L6.3 7.2L12.8 11.3Z" {...solid} />
       </>
     ),
-    negative: (
+    positive: (
       <>
         <circle cx="20" cy="23" r="3.4" />
         <path d="M20 19.5 13 5" strokeDasharray="2 3" />
@@ -85,7 +85,7 @@ const PICTURES: Record<JointWords['picture'] | 'grip', { positive: ReactNode; ne
     ),
   },
   roll: {
-    positive: (
+    negative: (
       <>
         <path d="M20 1.5v6" strokeWidth="3" />
         <path d="M13 8h14M15 8v8.5M25 8v8.5" strokeWidth="2.4" />
@@ -93,7 +93,7 @@ const PICTURES: Record<JointWords['picture'] | 'grip', { positive: ReactNode; ne
         <path d="M4 13.8 11.8 16.8 4.4 22Z" {...solid} />
       </>
     ),
-    negative: (
+    positive: (
       <>
         <path d="M20 1.5v6" strokeWidth="3" />
         <path d="M13 8h14M15 8v8.5M25 8v8.5" strokeWidth="2.4" />

@@ -3,6 +3,7 @@ import type { Arm } from '../../shared/api/resources';
 import { useArm } from '../api/arms';
 import { errorText } from '../api/client';
 import { Message } from '../components/Message';
+import { CaptureButton } from '../features/move/RecentPoses';
 import { Header } from '../features/shell/Header';
 import { LiveRegion } from '../features/shell/LiveRegion';
 import { StatusStrip } from '../features/shell/StatusStrip';
@@ -47,6 +48,7 @@ function ArmPages({ arm }: { arm: Arm }) {
           { to: `${at}/runs`, label: 'Runs' },
           { to: `${at}/build`, label: 'Build' },
         ]}
+        phoneAction={<CaptureButton arm={arm} className="ph" />}
         tools={
           <Link className="tool" style={{ textDecoration: 'none' }} to={`${at}/glance`}>
             Glance

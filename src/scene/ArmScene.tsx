@@ -1,4 +1,4 @@
-import { Canvas, useThree } from '@react-three/fiber';
+import { Canvas, useFrame, useThree } from '@react-three/fiber';
 import { useEffect, useRef, useState } from 'react';
 import type { ArmModel } from '../../shared/arm/model';
 import { Arm } from './Arm';
@@ -24,10 +24,40 @@ export interface SceneSource {
   subscribe(listener: () => void): () => void;
 }
 
-/** Draws when there is something new to draw, and not otherwise. */
+/** Between two pictures at least this long, ms, and at least this many times as long as the last one took. */
+const LEAST_PAUSE_MS = 30;
+const PAUSE_PER_DRAWING = 3;
+
+/**
+ * Draws when there is something new to draw, and not otherwise. A slow machine draws less often: the picture
+ * must never keep the page from its holds.
+ */
 function DrawOnSamples({ source }: { source: SceneSource }) {
   const invalidate = useThree((three) => three.invalidate);
-  useEffect(() => source.subscribe(() => invalidate()), [source, invalidate]);
+  const gl = useThree((three) => three.gl);
+  const drawing = useRef({ startedAtMs: 0, tookMs: 0, endedAtMs: 0, asked: false });
+  useFrame(() => {
+    const now = drawing.current;
+    now.startedAtMs = performance.now();
+    now.asked = false;
+    // The picture is drawn right after this; a task later its cost is known.
+    setTimeout(() => {
+      now.endedAtMs = performance.now();
+      now.tookMs = now.endedAtMs - now.startedAtMs;
+      gl.domElement.dataset.frames = String(gl.info.render.frame);
+    });
+  });
+  useEffect(
+    () =>
+      source.subscribe(() => {
+        const now = drawing.current;
+        const pauseMs = Math.max(LEAST_PAUSE_MS, PAUSE_PER_DRAWING * now.tookMs);
+        if (now.asked || performance.now() - now.endedAtMs < pauseMs) return;
+        now.asked = true;
+        invalidate();
+      }),
+    [source, invalidate],
+  );
   return null;
 }
 
@@ -52,8 +82,9 @@ export default function ArmScene({
     <div ref={frame} className="scene" style={{ position: 'absolute', inset: 0 }}>
       <Canvas
         orthographic
+        flat
         frameloop="demand"
-        dpr={[1, 1.5]}
+        dpr={1}
         camera={{ near: -10, far: 20, position: [2, -2, 2], up: [0, 0, 1] }}
         gl={{ antialias: true, alpha: true }}
         onCreated={({ gl }) => {

@@ -14,7 +14,7 @@ export const heron: ArmModel = {
       name: 'Base turn',
       words: WORDS.turn,
       at: [0, 0, 0.09],
-      axis: [0, 0, 1],
+      axis: [0, 0, -1],
       soft: [-125, 125],
       beyond: 10,
       speed: [70, 180, 1200],

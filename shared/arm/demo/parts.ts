@@ -73,12 +73,13 @@ export function servo(stallTorque: number, secondsPer60Deg: number): ServoDrive 
 }
 
 export const WORDS = {
+  // Axis down: positive turns clockwise seen from above, so that "left" stands on the left.
   turn: {
     picture: 'turn',
-    positive: 'left',
-    positiveDoing: 'turning left',
-    negative: 'right',
-    negativeDoing: 'turning right',
+    positive: 'right',
+    positiveDoing: 'turning right',
+    negative: 'left',
+    negativeDoing: 'turning left',
   },
   lift: {
     picture: 'lift',
@@ -101,12 +102,13 @@ export const WORDS = {
     negative: 'tilt down',
     negativeDoing: 'tilting down',
   },
+  // Axis outward along the link: positive turns clockwise for somebody who looks along it.
   roll: {
     picture: 'roll',
-    positive: 'roll left',
-    positiveDoing: 'rolling left',
-    negative: 'roll right',
-    negativeDoing: 'rolling right',
+    positive: 'roll right',
+    positiveDoing: 'rolling right',
+    negative: 'roll left',
+    negativeDoing: 'rolling left',
   },
   slide: {
     picture: 'slide',

@@ -14,7 +14,7 @@ export const wren: ArmModel = {
       name: 'Base turn',
       words: WORDS.turn,
       at: [0, 0, 0.08],
-      axis: [0, 0, 1],
+      axis: [0, 0, -1],
       soft: [-150, 150],
       beyond: 10,
       speed: [70, 180, 1200],

@@ -5,11 +5,27 @@ import { shownValue } from '../../../shared/arm/units';
 import { may } from '../../../shared/team/roles';
 import { Message } from '../../components/Message';
 import { sendCommand } from '../../live/connection';
-import { onHoldRefused } from '../../live/hold';
+import { type HoldEnd, lastHoldEnd, onHoldChange, onHoldRefused } from '../../live/hold';
 import { useArmState, useHello, useInControl, useTelemetry } from '../../live/use-live';
 import { toast } from '../shell/toast';
 import { DeclareDialog } from './JointValuesDialog';
 import { RestCard } from './RestCard';
+
+/** Ends of a hold that a person did not mean, in words. */
+const HOLD_END_WORDS: Partial<Record<HoldEnd, string>> = {
+  'pointer cancelled': 'the system took the touch away.',
+  'capture lost': 'the pointer was lost.',
+  'slid off': 'the pointer left the button.',
+  'second pointer': 'something else was touched.',
+  'window left': 'this window lost the focus.',
+  'page hidden': 'the page was hidden.',
+  'another key': 'another key was pressed.',
+  'page stalled': 'this page was stuck for a moment.',
+  'link quiet': 'no news came from the arm for 250 ms.',
+  'connection lost': 'the connection was lost.',
+  'control lost': 'control changed hands.',
+  'page turned': 'the page was turned or resized.',
+};
 
 /** One line (or the rest card) below the joints: what happens now, and what to do about it. */
 export function BottomLine({ model }: { model: ArmModel }) {
@@ -23,6 +39,15 @@ export function BottomLine({ model }: { model: ArmModel }) {
   const [refused, setRefused] = useState<string | null>(null);
   const [declaring, setDeclaring] = useState(false);
   useEffect(() => onHoldRefused(setRefused), []);
+  useEffect(
+    () =>
+      onHoldChange(() => {
+        const why = lastHoldEnd();
+        if (why !== null && HOLD_END_WORDS[why])
+          setRefused(`The hold ended: ${HOLD_END_WORDS[why]} Press again to go on.`);
+      }),
+    [],
+  );
   // A refusal is answered by the next thing that moves.
   useEffect(() => {
     if (motors === 'moving') setRefused(null);

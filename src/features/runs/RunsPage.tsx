@@ -1,11 +1,7 @@
 import './runs.css';
 import './runs-more.css';
-import {
-  createColumnHelper,
-  flexRender,
-  getCoreRowModel,
-  useLegacyTable,
-} from '@tanstack/react-table/legacy';
+import { flexRender } from '@tanstack/react-table';
+import { getCoreRowModel, legacyCreateColumnHelper, useLegacyTable } from '@tanstack/react-table/legacy';
 import { lazy, Suspense, useEffect, useMemo } from 'react';
 import { Link, useParams } from 'react-router-dom';
 import type { Arm, RunSummary } from '../../../shared/api/resources';
@@ -28,7 +24,7 @@ function Ending({ run }: { run: RunSummary }) {
   );
 }
 
-const column = createColumnHelper<RunSummary>();
+const column = legacyCreateColumnHelper<RunSummary>();
 
 export function RunsPage({ arm }: { arm: Arm }) {
   const runs = useRuns(arm.id);
@@ -37,9 +33,10 @@ export function RunsPage({ arm }: { arm: Arm }) {
   const chosen = runId ?? runs.data?.[0]?.id ?? null;
   const columns = useMemo(
     () => [
-      column.accessor('startedAtMs', {
+      column.display({
+        id: 'started',
         header: 'Started',
-        cell: (c) => <span className="n">{when(c.getValue())}</span>,
+        cell: ({ row }) => <span className="n">{when(row.original.startedAtMs)}</span>,
       }),
       column.display({
         id: 'what',
