@@ -20,11 +20,11 @@ export function ArmCard({ arm, old }: { arm: ArmSummary; old: boolean }) {
         </span>
       </p>
       <p className={`live ${filled} ${old ? 'stale' : ''}`}>
-        <MotorsIcon state={motors ?? 'resting'} />
-        <b>{motors ?? 'resting'}</b>
+        {motors && <MotorsIcon state={motors} />}
+        <b>{motors ?? 'not open'}</b>
         <span>
           {motors === null
-            ? 'nobody has it open'
+            ? 'opens resting'
             : arm.inControl
               ? `${arm.inControl} in control`
               : 'nobody in control'}
