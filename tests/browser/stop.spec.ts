@@ -1,0 +1,107 @@
+import { DEMO_ARMS } from '../../shared/arm/demo-arms';
+import { expect, test } from './support/product';
+import {
+  armState,
+  atRest,
+  declare,
+  newest,
+  openArm,
+  samples,
+  setCeiling,
+  takeControlAndEnergise,
+  watchArm,
+} from './support/steps';
+
+/** A rest position may differ from the shadow by 1 % of the joint's range or 0.2°, whichever is larger. */
+function allowed(joint: (typeof DEMO_ARMS.heron.joints)[number]): number {
+  return Math.max(0.01 * (joint.limits.upper - joint.limits.lower), (0.2 * Math.PI) / 180);
+}
+
+test('Stop in mid-move rests every joint where the stopping shadow said', async ({ as }) => {
+  const page = await as('teacher');
+  await openArm(page, 'Heron');
+  await takeControlAndEnergise(page);
+  await declare(page);
+  await watchArm(page);
+  await setCeiling(page, 'easy');
+  await page.getByRole('link', { name: 'Poses', exact: true }).click();
+  await page.locator('.pc', { hasText: 'Above scale' }).click();
+  const go = page.getByRole('button', { name: /Hold to go there/ });
+  const box = (await go.boundingBox())!;
+  await page.mouse.move(box.x + 40, box.y + box.height / 2);
+  await page.mouse.down();
+  await expect.poll(async () => Math.max(...(await newest(page)).qd.map(Math.abs))).toBeGreaterThan(0.1);
+  // The button itself, pressed by keyboard while the mouse still holds: the hand that stops is another's.
+  await page.keyboard.press('Escape');
+  await expect.poll(async () => (await armState(page)).stop?.by).toBe('Ines');
+  await atRest(page);
+  await page.mouse.up();
+
+  const all = await samples(page);
+  const rest = all.at(-1)!.q;
+  // The ramp begins where the speed that had been growing or steady starts to fall for good: its shadow is the promise.
+  const speed = all.map((s) => Math.max(...s.qd.map(Math.abs)));
+  let start = speed.length - 1;
+  while (start > 0 && speed[start - 1]! >= speed[start]! - 1e-9) start--;
+  const promise = all[start]!.stopAt;
+  expect(speed[start]).toBeGreaterThan(0.05);
+  for (const [i, joint] of DEMO_ARMS.heron.joints.entries())
+    expect(Math.abs(rest[i]! - promise[i]!), joint.name).toBeLessThanOrEqual(allowed(joint));
+  await expect(page.locator('.stopsay')).toContainText('acknowledged');
+});
+
+test('an observer in a second browser sees the arm move, cannot move it, and can stop it', async ({ as }) => {
+  const ines = await as('teacher');
+  await openArm(ines, 'Heron');
+  await takeControlAndEnergise(ines);
+  await declare(ines);
+  await watchArm(ines);
+  const otis = await as('observer');
+  await openArm(otis, 'Heron');
+  await watchArm(otis);
+
+  // The page offers nothing that moves.
+  await expect(otis.getByRole('button', { name: /Base turn, right/ })).toHaveAttribute(
+    'aria-disabled',
+    'true',
+  );
+  await expect(otis.locator('.c-ctl').getByRole('button')).toHaveCount(0);
+  // The raw socket refuses what the page does not offer.
+  const refusal = await otis.evaluate(
+    () =>
+      new Promise<{ code: string }>((done) => {
+        const { socket } = (window as unknown as { spy: { socket: WebSocket } }).spy;
+        socket.addEventListener('message', (event) => {
+          const message = JSON.parse(event.data);
+          if (message.type === 'refused') done(message);
+        });
+        socket.send(
+          JSON.stringify({
+            type: 'hold.start',
+            id: '1',
+            turn: 1,
+            holdId: 'x',
+            motion: { kind: 'jog', frame: 'joint', axis: 0, direction: 1 },
+          }),
+        );
+      }),
+  );
+  expect(refusal.code).toBe('notAllowed');
+
+  const before = (await newest(otis)).q[0]!;
+  const button = ines.getByRole('button', { name: 'Base turn, right: hold to move' });
+  const box = (await button.boundingBox())!;
+  await ines.mouse.move(box.x + 30, box.y + 30);
+  await ines.mouse.down();
+  await expect.poll(async () => Math.abs((await newest(otis)).q[0]! - before)).toBeGreaterThan(0.02);
+  await expect(otis.locator('.c-motors')).toContainText('moving');
+  await otis.getByRole('button', { name: 'Stop arm' }).click();
+  await atRest(otis);
+  await ines.mouse.up();
+  await expect.poll(async () => (await armState(otis)).stop?.by).toBe('Otis');
+  await expect(otis.locator('.stopsay')).toContainText('acknowledged');
+  const stopped = (await newest(otis)).q[0]!;
+  // Nothing resumes by itself.
+  await ines.waitForTimeout(400);
+  expect((await newest(ines)).q[0]).toBe(stopped);
+});
