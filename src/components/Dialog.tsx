@@ -1,5 +1,20 @@
 import { Dialog as Radix } from 'radix-ui';
-import type { ReactNode } from 'react';
+import { type ReactNode, useEffect, useLayoutEffect, useRef } from 'react';
+
+/** Everything the veil lies over; Stop and the live regions are not part of it. */
+const COVERED = '.page > :not(.strip, .vh), .strip > :not(.stopcell)';
+
+/** What is covered can be neither pressed nor reached by keyboard, so focus never hides behind the veil. */
+function useCovered(open: boolean): void {
+  useEffect(() => {
+    if (!open) return;
+    const covered = [...document.querySelectorAll<HTMLElement>(COVERED)].filter((part) => !part.inert);
+    for (const part of covered) part.inert = true;
+    return () => {
+      for (const part of covered) part.inert = false;
+    };
+  }, [open]);
+}
 
 /**
  * A question above the sheet. Esc belongs to Stop and does not close it; a press outside does not either, and
@@ -16,6 +31,12 @@ export function Dialog({
   title: string;
   children: ReactNode;
 }) {
+  useCovered(open);
+  const before = useRef<HTMLElement | null>(null);
+  // Before Radix moves the focus into the question, which it does in a later effect.
+  useLayoutEffect(() => {
+    if (open && document.activeElement instanceof HTMLElement) before.current = document.activeElement;
+  }, [open]);
   return (
     <Radix.Root open={open} onOpenChange={(next) => !next && onClose()} modal={false}>
       <Radix.Portal>
@@ -23,6 +44,11 @@ export function Dialog({
         <Radix.Content
           className="dialog"
           aria-describedby={undefined}
+          onCloseAutoFocus={(event) => {
+            // Without a trigger of its own Radix would leave the focus nowhere.
+            event.preventDefault();
+            before.current?.focus();
+          }}
           onEscapeKeyDown={(event) => event.preventDefault()}
           onInteractOutside={(event) => event.preventDefault()}
         >

@@ -18,7 +18,7 @@ export function ArmSettings() {
         Arms
       </h2>
       <p className="small quiet">
-        A run pauses when whoever started it has been away for 10 s, unless its arm may run unattended.
+        A run pauses when whoever started it has been away for 10 s, unless its arm may run unattended.
       </p>
       {settings.isError && <Message kind="fault">{errorText(settings.error)}</Message>}
       <QueryState query={arms} waiting="Looking for arms…" empty={arms.data?.length ? null : 'No arm yet.'} />

@@ -1,9 +1,9 @@
-import { DropdownMenu } from 'radix-ui';
 import { useState } from 'react';
 import { Link } from 'react-router-dom';
 import { errorText } from '../../api/client';
 import { useSession, useSignOut } from '../../api/session';
 import { ChevronDown } from '../../components/icons';
+import { Menu, MenuButton, MenuItem, MenuLabel, MenuList } from '../../components/Menu';
 import { currentTheme, toggleTheme } from '../../components/theme';
 import { toast } from './toast';
 
@@ -21,26 +21,22 @@ export function AccountMenu() {
   const signOut = useSignOut();
   if (!you) return null;
   return (
-    <DropdownMenu.Root modal={false}>
-      <DropdownMenu.Trigger className="tool me">
+    <Menu>
+      <MenuButton className="tool me">
         {you.name}
         <ChevronDown />
-      </DropdownMenu.Trigger>
-      <DropdownMenu.Portal>
-        <DropdownMenu.Content className="menu-list" align="end" sideOffset={4}>
-          <DropdownMenu.Label className="note">
-            {you.email}, {you.role}
-          </DropdownMenu.Label>
-          <DropdownMenu.Item asChild>
-            <Link to="/settings">Settings</Link>
-          </DropdownMenu.Item>
-          <DropdownMenu.Item
-            onSelect={() => signOut.mutate(undefined, { onError: (error) => toast(errorText(error)) })}
-          >
-            Sign out everywhere
-          </DropdownMenu.Item>
-        </DropdownMenu.Content>
-      </DropdownMenu.Portal>
-    </DropdownMenu.Root>
+      </MenuButton>
+      <MenuList align="end" sideOffset={4}>
+        <MenuLabel className="note">
+          {you.email}, {you.role}
+        </MenuLabel>
+        <MenuItem asChild>
+          <Link to="/settings">Settings</Link>
+        </MenuItem>
+        <MenuItem onSelect={() => signOut.mutate(undefined, { onError: (error) => toast(errorText(error)) })}>
+          Sign out everywhere
+        </MenuItem>
+      </MenuList>
+    </Menu>
   );
 }

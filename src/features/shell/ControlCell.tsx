@@ -1,7 +1,7 @@
-import { DropdownMenu } from 'radix-ui';
 import { useState } from 'react';
 import { may } from '../../../shared/team/roles';
 import { usePeople } from '../../api/team';
+import { Menu, MenuButton, MenuItem, MenuList } from '../../components/Menu';
 import { clock } from '../../components/when';
 import { sendCommand } from '../../live/connection';
 import { useArmState, useHello } from '../../live/use-live';
@@ -50,36 +50,28 @@ function ControlButton({ yours }: { yours: boolean }) {
     );
   if (yours && control.request)
     return (
-      <DropdownMenu.Root modal={false} defaultOpen>
-        <DropdownMenu.Trigger className="btn sm ink">Answer</DropdownMenu.Trigger>
-        <DropdownMenu.Portal>
-          <DropdownMenu.Content className="menu-list" side="top" align="end" sideOffset={6}>
-            <DropdownMenu.Item onSelect={() => send({ type: 'control.answer', accept: true })}>
-              Give control to {control.request.name}
-            </DropdownMenu.Item>
-            <DropdownMenu.Item onSelect={() => send({ type: 'control.answer', accept: false })}>
-              Keep control
-            </DropdownMenu.Item>
-          </DropdownMenu.Content>
-        </DropdownMenu.Portal>
-      </DropdownMenu.Root>
+      <Menu defaultOpen>
+        <MenuButton className="btn sm ink">Answer</MenuButton>
+        <MenuList side="top" align="end" sideOffset={6}>
+          <MenuItem onSelect={() => send({ type: 'control.answer', accept: true })}>
+            Give control to {control.request.name}
+          </MenuItem>
+          <MenuItem onSelect={() => send({ type: 'control.answer', accept: false })}>Keep control</MenuItem>
+        </MenuList>
+      </Menu>
     );
   if (yours) return <HandOver onSend={send} />;
   if (hello && may(hello.you.role, 'control.force'))
     return (
-      <DropdownMenu.Root modal={false}>
-        <DropdownMenu.Trigger className="btn sm">Ask</DropdownMenu.Trigger>
-        <DropdownMenu.Portal>
-          <DropdownMenu.Content className="menu-list" side="top" align="end" sideOffset={6}>
-            <DropdownMenu.Item onSelect={() => send({ type: 'control.take' })}>
-              Ask {control.name}
-            </DropdownMenu.Item>
-            <DropdownMenu.Item onSelect={() => send({ type: 'control.take', force: true })}>
-              Stop the arm and take control
-            </DropdownMenu.Item>
-          </DropdownMenu.Content>
-        </DropdownMenu.Portal>
-      </DropdownMenu.Root>
+      <Menu>
+        <MenuButton className="btn sm">Ask</MenuButton>
+        <MenuList side="top" align="end" sideOffset={6}>
+          <MenuItem onSelect={() => send({ type: 'control.take' })}>Ask {control.name}</MenuItem>
+          <MenuItem onSelect={() => send({ type: 'control.take', force: true })}>
+            Stop the arm and take control
+          </MenuItem>
+        </MenuList>
+      </Menu>
     );
   return (
     <button
@@ -103,23 +95,19 @@ function HandOver({ onSend }: { onSend: (command: Parameters<typeof sendCommand>
     (p) => p.id !== hello?.you.userId && !p.disabled && may(p.role, 'arm.control'),
   );
   return (
-    <DropdownMenu.Root modal={false}>
-      <DropdownMenu.Trigger className="btn sm">Hand over</DropdownMenu.Trigger>
-      <DropdownMenu.Portal>
-        <DropdownMenu.Content className="menu-list" side="top" align="end" sideOffset={6}>
-          <DropdownMenu.Item onSelect={() => onSend({ type: 'control.handBack' })}>
-            Hand back, to nobody
-          </DropdownMenu.Item>
-          {others.map((person) => (
-            <DropdownMenu.Item
-              key={person.id}
-              onSelect={() => onSend({ type: 'control.handOver', toUserId: person.id })}
-            >
-              Hand over to {person.name}
-            </DropdownMenu.Item>
-          ))}
-        </DropdownMenu.Content>
-      </DropdownMenu.Portal>
-    </DropdownMenu.Root>
+    <Menu>
+      <MenuButton className="btn sm">Hand over</MenuButton>
+      <MenuList side="top" align="end" sideOffset={6}>
+        <MenuItem onSelect={() => onSend({ type: 'control.handBack' })}>Hand back, to nobody</MenuItem>
+        {others.map((person) => (
+          <MenuItem
+            key={person.id}
+            onSelect={() => onSend({ type: 'control.handOver', toUserId: person.id })}
+          >
+            Hand over to {person.name}
+          </MenuItem>
+        ))}
+      </MenuList>
+    </Menu>
   );
 }

@@ -1,9 +1,10 @@
-import { DropdownMenu } from 'radix-ui';
+import './shell.css';
 import type { ReactNode } from 'react';
 import { Link, NavLink, useNavigate } from 'react-router-dom';
 import { useArms } from '../../api/arms';
 import { useSession } from '../../api/session';
 import { BrandMark, ChevronDown, MenuIcon } from '../../components/icons';
+import { Menu, MenuButton, MenuItem, MenuList } from '../../components/Menu';
 import { toggleTheme } from '../../components/theme';
 import { AccountMenu, ThemeButton } from './AccountMenu';
 
@@ -58,25 +59,21 @@ export function Header({
         <AccountMenu />
       </div>
       {phoneAction}
-      <DropdownMenu.Root modal={false}>
-        <DropdownMenu.Trigger className="menu" aria-label="Sheets">
+      <Menu>
+        <MenuButton className="menu" aria-label="Sheets">
           <MenuIcon />
-        </DropdownMenu.Trigger>
-        <DropdownMenu.Portal>
-          <DropdownMenu.Content className="menu-list" align="end" sideOffset={4}>
-            {tabs.map((tab) => (
-              <DropdownMenu.Item key={tab.to} onSelect={() => navigate(tab.to)}>
-                {tab.label}
-              </DropdownMenu.Item>
-            ))}
-            <DropdownMenu.Item onSelect={() => navigate('/')}>All arms</DropdownMenu.Item>
-            <DropdownMenu.Item onSelect={() => toggleTheme()}>Day or night colours</DropdownMenu.Item>
-            <DropdownMenu.Item onSelect={() => navigate('/settings')}>
-              Settings and sign-out
-            </DropdownMenu.Item>
-          </DropdownMenu.Content>
-        </DropdownMenu.Portal>
-      </DropdownMenu.Root>
+        </MenuButton>
+        <MenuList align="end" sideOffset={4}>
+          {tabs.map((tab) => (
+            <MenuItem key={tab.to} onSelect={() => navigate(tab.to)}>
+              {tab.label}
+            </MenuItem>
+          ))}
+          <MenuItem onSelect={() => navigate('/')}>All arms</MenuItem>
+          <MenuItem onSelect={() => toggleTheme()}>Day or night colours</MenuItem>
+          <MenuItem onSelect={() => navigate('/settings')}>Settings and sign-out</MenuItem>
+        </MenuList>
+      </Menu>
     </header>
   );
 }
@@ -85,22 +82,20 @@ function ArmSwitch({ arm }: { arm: { id: string; name: string } }) {
   const arms = useArms().data ?? [];
   const navigate = useNavigate();
   return (
-    <DropdownMenu.Root modal={false}>
-      <DropdownMenu.Trigger aria-label={`${arm.name}, choose another arm`}>
+    <Menu>
+      <MenuButton aria-label={`${arm.name}, choose another arm`}>
         <b>{arm.name}</b>
         <ChevronDown />
-      </DropdownMenu.Trigger>
-      <DropdownMenu.Portal>
-        <DropdownMenu.Content className="menu-list" align="start" sideOffset={4}>
-          {arms.map((other) => (
-            <DropdownMenu.Item key={other.id} onSelect={() => navigate(`/arms/${other.id}/move`)}>
-              {other.name}
-              <span className="note">{other.motors ?? ''}</span>
-            </DropdownMenu.Item>
-          ))}
-          <DropdownMenu.Item onSelect={() => navigate('/')}>All arms</DropdownMenu.Item>
-        </DropdownMenu.Content>
-      </DropdownMenu.Portal>
-    </DropdownMenu.Root>
+      </MenuButton>
+      <MenuList align="start" sideOffset={4}>
+        {arms.map((other) => (
+          <MenuItem key={other.id} onSelect={() => navigate(`/arms/${other.id}/move`)}>
+            {other.name}
+            <span className="note">{other.motors ?? ''}</span>
+          </MenuItem>
+        ))}
+        <MenuItem onSelect={() => navigate('/')}>All arms</MenuItem>
+      </MenuList>
+    </Menu>
   );
 }
