@@ -1,3 +1,4 @@
+import { holdUntil } from './support/hold-until';
 import { expect, test } from './support/product';
 import {
   atRest,
@@ -30,19 +31,22 @@ test('sign in, bring up, jog, teach, record, rehearse, hold the first cycle, run
     ['Forearm', 'fold'],
     ['Wrist tilt', 'tilt up'],
   ] as const;
-  const poses: string[] = [];
+  const captured = new Map<string, number[]>();
   for (const [index, [joint, word]] of joints.entries()) {
     const before = (await newest(page)).q[index]!;
-    await holdWhile(page, page.getByRole('button', { name: `${joint}, ${word}: hold to move` }), async () => {
-      await expect(page.locator('.c-motors')).toContainText('moving');
-      await expect.poll(async () => Math.abs((await newest(page)).q[index]! - before)).toBeGreaterThan(0.12);
-    });
+    await holdUntil(
+      page,
+      page
+        .getByRole('button', { name: `${joint}, ${word}: hold to move` })
+        .or(page.locator(`[data-joint="${index}"] .held`)),
+      async () => Math.abs((await newest(page)).q[index]! - before) > 0.12,
+    );
     await atRest(page);
     await expect(page.locator('.c-motors')).toContainText('standing');
     // Capture a pose at each place.
     await page.locator('.recent').getByRole('button', { name: 'Capture pose' }).click();
     await expect(page.getByText(new RegExp(`Captured as “Pose ${index + 1}”`))).toBeVisible();
-    poses.push(`Pose ${index + 1}`);
+    captured.set(`Pose ${index + 1}`, (await newest(page)).q);
   }
 
   // Record a pick-and-place by marking.
@@ -60,9 +64,9 @@ test('sign in, bring up, jog, teach, record, rehearse, hold the first cycle, run
     await expect(page.getByText(/Saved as version/).first()).toBeVisible();
     await page.getByRole('link', { name: 'Poses', exact: true }).click();
     await page.locator('.pc', { hasText: name }).click();
-    await holdWhile(page, page.getByRole('button', { name: /Hold to go there/ }), async () => {
-      await expect(page.locator('.c-motors')).toContainText('moving');
-      await expect(page.locator('.c-motors')).toContainText('standing', { timeout: 30_000 });
+    await holdUntil(page, page.locator('.go', { hasText: /Hold to go there|let go to stop/ }), async () => {
+      const { q, qd } = await newest(page);
+      return qd.every((v) => v === 0) && q.every((v, i) => Math.abs(v - captured.get(name)![i]!) < 1e-4);
     });
     await page.getByRole('link', { name: 'Sequences', exact: true }).click();
     await page.getByRole('link', { name: 'Carry one vial' }).click();
@@ -83,9 +87,12 @@ test('sign in, bring up, jog, teach, record, rehearse, hold the first cycle, run
   // Hold through the first cycle, then three in all.
   await page.getByLabel('Cycles').fill('4');
   await page.getByRole('button', { name: /^Run first cycle held/ }).click();
-  await holdWhile(page, page.getByRole('button', { name: /Hold to run/ }), async () => {
-    await expect(page.getByRole('button', { name: /Resume/ })).toBeVisible({ timeout: 90_000 });
-  });
+  await holdUntil(
+    page,
+    page.locator('.run .go', { hasText: /Hold to run|let go to stop/ }),
+    async () => (await page.getByRole('button', { name: /Resume/ }).count()) > 0,
+    120_000,
+  );
   await page.getByRole('button', { name: /Resume/ }).click();
   await expect(page.getByRole('status').filter({ hasText: 'Moves in' })).toBeVisible();
   await expect(page.getByRole('button', { name: /^Run after 3 s/ })).toBeVisible({ timeout: 120_000 });
@@ -100,5 +107,5 @@ test('sign in, bring up, jog, teach, record, rehearse, hold the first cycle, run
   await expect(cycles.nth(1)).toContainText('held');
   await expect(cycles.nth(2)).toContainText('by itself');
   await expect(cycles.nth(4)).toContainText(/\d+\.\d\d s/);
-  expect(poses.length).toBe(4);
+  expect(captured.size).toBe(4);
 });

@@ -1,4 +1,5 @@
 import { DEMO_ARMS } from '../../shared/arm/demo-arms';
+import { holdUntil } from './support/hold-until';
 import { expect, test } from './support/product';
 import {
   armState,
@@ -26,16 +27,14 @@ test('Stop in mid-move rests every joint where the stopping shadow said', async 
   await setCeiling(page, 'easy');
   await page.getByRole('link', { name: 'Poses', exact: true }).click();
   await page.locator('.pc', { hasText: 'Above scale' }).click();
-  const go = page.getByRole('button', { name: /Hold to go there/ });
-  const box = (await go.boundingBox())!;
-  await page.mouse.move(box.x + 40, box.y + box.height / 2);
-  await page.mouse.down();
-  await expect.poll(async () => Math.max(...(await newest(page)).qd.map(Math.abs))).toBeGreaterThan(0.1);
-  // The button itself, pressed by keyboard while the mouse still holds: the hand that stops is another's.
-  await page.keyboard.press('Escape');
+  // Esc in mid-move, while the button is still held.
+  await holdUntil(page, page.locator('.go', { hasText: /Hold to go there|let go to stop/ }), async () => {
+    if (Math.max(...(await newest(page)).qd.map(Math.abs)) < 0.1) return false;
+    await page.keyboard.press('Escape');
+    return true;
+  });
   await expect.poll(async () => (await armState(page)).stop?.by).toBe('Ines');
   await atRest(page);
-  await page.mouse.up();
 
   const all = await samples(page);
   const rest = all.at(-1)!.q;
@@ -90,14 +89,19 @@ test('an observer in a second browser sees the arm move, cannot move it, and can
 
   const before = (await newest(otis)).q[0]!;
   const button = ines.getByRole('button', { name: 'Base turn, right: hold to move' });
-  const box = (await button.boundingBox())!;
-  await ines.mouse.move(box.x + 30, box.y + 30);
-  await ines.mouse.down();
-  await expect.poll(async () => Math.abs((await newest(otis)).q[0]! - before)).toBeGreaterThan(0.02);
-  await expect(otis.locator('.c-motors')).toContainText('moving');
-  await otis.getByRole('button', { name: 'Stop arm' }).click();
+  let seenMoving = false;
+  // Ines holds; as soon as Otis sees the arm move on his own page, he stops it.
+  await holdUntil(ines, button.or(ines.locator('[data-joint="0"] .held')), async () => {
+    const moving = (await otis.locator('.c-motors').innerText()).includes('moving');
+    if (moving && Math.abs((await newest(otis)).q[0]! - before) > 0.01) {
+      seenMoving = true;
+      await otis
+        .getByRole('button', { name: 'Stop arm' })
+        .dispatchEvent('pointerdown', { button: 0, isPrimary: true });
+    }
+    return seenMoving;
+  });
   await atRest(otis);
-  await ines.mouse.up();
   await expect.poll(async () => (await armState(otis)).stop?.by).toBe('Otis');
   await expect(otis.locator('.stopsay')).toContainText('acknowledged');
   const stopped = (await newest(otis)).q[0]!;

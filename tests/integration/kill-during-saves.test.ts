@@ -1,5 +1,5 @@
 import { type ChildProcess, spawn } from 'node:child_process';
-import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
+import { existsSync, mkdtempSync, readFileSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import Sqlite from 'better-sqlite3';
@@ -7,6 +7,10 @@ import { afterAll, describe, expect, it } from 'vitest';
 import { seededRandom } from '../../shared/kinematics';
 
 const ROUNDS = 50;
+/** `npm run verify` builds first; the built server is up in a second. */
+const SERVER = existsSync('dist/server/index.js')
+  ? ['dist/server/index.js']
+  : ['--import', 'tsx', 'server/index.ts'];
 const folder = mkdtempSync(join(tmpdir(), 'elbowroom-kill-'));
 let child: ChildProcess | null = null;
 afterAll(() => {
@@ -17,7 +21,7 @@ afterAll(() => {
 /** A server process of its own on this data folder; resolves with its address. */
 function start(): Promise<string> {
   return new Promise((resolve, reject) => {
-    const started = spawn(process.execPath, ['--import', 'tsx', 'server/index.ts', '--demo'], {
+    const started = spawn(process.execPath, [...SERVER, '--demo'], {
       env: { ...process.env, PORT: '0', ELBOWROOM_DATA: folder },
       stdio: ['ignore', 'pipe', 'pipe'],
     });

@@ -1,4 +1,4 @@
-import { expect, type Locator, type Page } from '@playwright/test';
+import { expect, type Page } from '@playwright/test';
 import type { StateMessage, TelemetryMessage } from '../../../shared/live/server-messages';
 
 /** What people do on the pages, as people do it. */
@@ -32,15 +32,6 @@ export async function setCeiling(page: Page, name: 'creep' | 'easy' | 'full'): P
     .getByRole('group', { name: /^Speed ceiling/ })
     .getByRole('button', { name, exact: true })
     .click();
-}
-
-/** Presses and holds with the mouse while `during` goes on, then lets go. */
-export async function holdWhile(page: Page, button: Locator, during: () => Promise<void>): Promise<void> {
-  const box = (await button.boundingBox())!;
-  await page.mouse.move(box.x + box.width / 2, box.y + box.height / 2);
-  await page.mouse.down();
-  await during();
-  await page.mouse.up();
 }
 
 /** A second pair of eyes on the arm: a socket opened by the test inside the page, with the page's own session. */
