@@ -1,10 +1,9 @@
 import { existsSync } from 'node:fs';
-import { join } from 'node:path';
-import express, { type Express } from 'express';
+import express, { type Express, type RequestHandler } from 'express';
 import helmet from 'helmet';
 import type { Context } from './context';
 import { routes } from './routes';
-import { mountRoutes } from './routes/mount';
+import { admitRequests, mountRoutes } from './routes/mount';
 import { HttpProblem, noSuchRoute, problemHandler } from './routes/problem';
 import { signInLimits } from './routes/session';
 
@@ -15,6 +14,8 @@ export interface AppOptions {
   secure: boolean;
   /** Proxies in front whose X-Forwarded-For is believed. */
   trustProxy: boolean;
+  /** Notes what was asked and how it went. */
+  requestLog?: RequestHandler;
 }
 
 /** The Express app without a listening server, so that tests can mount it. */
@@ -22,6 +23,7 @@ export function createApp(context: Context, options: AppOptions): Express {
   const app = express();
   app.disable('x-powered-by');
   app.set('trust proxy', options.trustProxy ? 1 : false);
+  if (options.requestLog) app.use(options.requestLog);
   app.use((request, _response, next) =>
     next(
       context.origins.hostAllowed(request.headers.host)
@@ -40,7 +42,7 @@ export function createApp(context: Context, options: AppOptions): Express {
           // Travel bars and plots place things by style attributes.
           styleSrc: ["'self'", "'unsafe-inline'"],
           imgSrc: ["'self'", 'data:', 'blob:'],
-          connectSrc: ["'self'", 'ws:', 'wss:'],
+          connectSrc: ["'self'"],
           objectSrc: ["'none'"],
           baseUri: ["'none'"],
           frameAncestors: ["'none'"],
@@ -50,7 +52,8 @@ export function createApp(context: Context, options: AppOptions): Express {
       referrerPolicy: { policy: 'same-origin' },
     }),
   );
-  app.post('/api/session', express.json({ limit: '10kb' }), ...signInLimits(context));
+  app.use('/api', ...admitRequests(context));
+  app.post('/api/session', ...signInLimits(context));
   app.post(['/api/setup', '/api/invitations/accept'], signInLimits(context)[0]!);
   mountRoutes(app, context, routes);
   app.use('/api', noSuchRoute);
@@ -66,8 +69,10 @@ export function createApp(context: Context, options: AppOptions): Express {
           ),
       }),
     );
+    app.use('/assets', noSuchRoute);
+    // With a root, a dot in the path of the install folder is nobody's business.
     app.get('/{*page}', (_request, response) =>
-      response.set('Cache-Control', 'no-cache').sendFile(join(clientFolder, 'index.html')),
+      response.set('Cache-Control', 'no-cache').sendFile('index.html', { root: clientFolder }),
     );
   }
   app.use(problemHandler(context.log));

@@ -4,6 +4,7 @@ import { DEMO_ARMS } from '../shared/arm/demo-arms';
 import { degToRad } from '../shared/arm/units';
 import type { Step } from '../shared/sequence/steps';
 import type { Role } from '../shared/team/roles';
+import { hashNewPassword } from './auth/people-store';
 import type { Context } from './context';
 import { prepare } from './sequences/programs';
 import { readablePassword } from './settings';
@@ -45,12 +46,16 @@ export async function seedDemo(context: Context, dataFolder: string): Promise<vo
     email: `${name.toLowerCase()}@tidemill.example`,
     password: readablePassword(),
   }));
+  const hashes = await Promise.all(signIns.map(({ password, email }) => hashNewPassword(password, email)));
   writeFileSync(fileOf(dataFolder), JSON.stringify(signIns, null, 2), { mode: 0o600 });
   chmodSync(fileOf(dataFolder), 0o600);
-  context.workshop.set(WORKSHOP, true);
-  for (const signIn of signIns) await context.people.add(signIn);
-  for (const model of Object.values(DEMO_ARMS)) context.arms.add(model, 'Moss', 'First description');
-  seedHeron(context);
+  context.db.transaction(() => {
+    context.workshop.set(WORKSHOP, true);
+    for (const [i, { name, role, email }] of signIns.entries())
+      context.people.add({ name, role, email, passwordHash: hashes[i]! });
+    for (const model of Object.values(DEMO_ARMS)) context.arms.add(model, 'Moss', 'First description');
+    seedHeron(context);
+  });
 }
 
 function seedHeron(context: Context): void {

@@ -4,7 +4,6 @@ import { spawnSync } from 'node:child_process';
 import { existsSync, readdirSync, statSync } from 'node:fs';
 import { join } from 'node:path';
 
-const npm = process.platform === 'win32' ? 'npm.cmd' : 'npm';
 const major = Number(process.versions.node.split('.')[0]);
 if (major < 20) {
   console.error(`Elbowroom needs Node 20 or newer; this is ${process.version}.`);
@@ -12,7 +11,7 @@ if (major < 20) {
 }
 
 function run(...args) {
-  const { status } = spawnSync(npm, args, { stdio: 'inherit' });
+  const { status } = spawnSync('npm', args, { stdio: 'inherit', shell: process.platform === 'win32' });
   if (status !== 0) {
     console.error(`npm ${args.join(' ')} failed. Nothing was started.`);
     process.exit(status ?? 1);

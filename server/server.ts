@@ -5,27 +5,16 @@ import { createServer as createTlsServer } from 'node:https';
 import type { AddressInfo } from 'node:net';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { pino } from 'pino';
+import { type Logger, pino } from 'pino';
+import { pinoHttp } from 'pino-http';
 import { createApp } from './app';
 import { Arms } from './arms/arms';
 import { recordKeeper } from './arms/keep-records';
-import { AuditLog } from './audit/audit-log';
-import { Invitations } from './auth/invitations';
-import { PeopleStore } from './auth/people-store';
-import { Sessions } from './auth/sessions';
-import { SetupCode } from './auth/setup-code';
-import type { Context } from './context';
-import { ArmStore } from './db/arm-store';
-import { openDatabase } from './db/database';
-import { PoseStore } from './db/pose-store';
-import { RunStore } from './db/run-store';
-import { SequenceStore } from './db/sequence-store';
-import { WorkshopStore } from './db/workshop-store';
+import { type Context, openContext, ownAddresses } from './context';
 import { seedDemo } from './demo';
 import { LiveGateway } from './live/gateway';
 import { resolveWith } from './live/resolve';
-import { Mailer } from './mail/mailer';
-import { Origins } from './origins';
+import { EVERY_ADDRESS } from './origins';
 import type { Settings } from './settings';
 
 /** Built, we stand in dist/server; from sources, in server/. */
@@ -47,51 +36,37 @@ export async function startServer(
 ): Promise<RunningServer> {
   const log = pino({ level: process.env.LOG_LEVEL ?? 'warn' });
   const wallMs = Date.now;
-  const db = openDatabase(
-    join(settings.dataFolder, 'elbowroom.sqlite'),
-    join(here, '..', 'drizzle'),
-    (message) => log.info(message),
-  );
-  const armStore = new ArmStore(db, wallMs);
-  const runs = new RunStore(db, wallMs);
-  const sequences = new SequenceStore(db, wallMs);
-  const poses = new PoseStore(db, wallMs);
-  const audit = new AuditLog(db, wallMs, log);
-  const sessions = new Sessions(db, wallMs, settings.secure);
-  const origins = new Origins(settings);
-  runs.closeOpen();
-  const arms = new Arms({
-    loadArm: (armId) => armStore.find(armId),
-    fork: forkArmProcess,
-    keepRecord: recordKeeper({ arms: armStore, runs, sequences, audit }),
+  let url = '';
+  let arms!: Arms;
+  const context = openContext({
+    settings,
+    migrationsFolder: join(here, '..', 'drizzle'),
     wallMs,
     log,
-  });
-  let url = '';
-  const context: Context = {
-    db,
-    sessions,
-    people: new PeopleStore(db, wallMs),
-    invitations: new Invitations(db, wallMs),
-    setupCode: new SetupCode(),
-    workshop: new WorkshopStore(db),
-    arms: armStore,
-    poses,
-    sequences,
-    runs,
-    live: arms,
-    audit,
-    mailer: new Mailer(db, { smtpUrl: settings.smtpUrl, from: settings.mailFrom, wallMs, log }),
-    origins,
     publicUrl: () => settings.publicUrl ?? url,
-    signInLimit: options.signInLimit ?? { perAddress: 20, perAccount: 8 },
-    log,
-  };
+    signInLimit: options.signInLimit,
+    live: (stores) => {
+      arms = new Arms({
+        loadArm: (armId) => stores.arms.find(armId),
+        fork: forkArmProcess,
+        keepRecord: recordKeeper(stores),
+        wallMs,
+        log,
+      });
+      return arms;
+    },
+  });
+  const { sessions, origins } = context;
+  context.runs.closeOpen();
+  warnOfBrokenAudit(context);
   if (settings.demo) await seedDemo(context, settings.dataFolder);
   const app = createApp(context, {
     clientFolder: built ? join(here, '..', 'client') : join(here, '..', 'dist', 'client'),
     secure: settings.secure,
-    trustProxy: settings.publicUrl !== null && settings.tls === null,
+    // Only an https address that is not our own TLS means that there is a proxy; believing its header
+    // without one would let anybody choose the address that sign-in is limited by.
+    trustProxy: settings.secure && settings.tls === null,
+    requestLog: requestLog(log),
   });
   const http: Server = settings.tls
     ? createTlsServer({ cert: readFileSync(settings.tls.cert), key: readFileSync(settings.tls.key) }, app)
@@ -102,10 +77,10 @@ export async function startServer(
     onSessionEnded: (listener) => sessions.onEnded(listener),
     originAllowed: (request) => origins.allows(request),
     describeArm(armId) {
-      const arm = armStore.find(armId);
+      const arm = context.arms.find(armId);
       return arm ? { id: arm.id, revision: arm.revision, model: arm.model } : null;
     },
-    resolve: resolveWith({ arms: armStore, poses, sequences }),
+    resolve: resolveWith(context),
     monotonicMs: () => performance.now(),
     log,
   });
@@ -115,7 +90,7 @@ export async function startServer(
     http.listen(settings.port, settings.host, resolve);
   });
   const { port } = http.address() as AddressInfo;
-  const shownHost = settings.host === '127.0.0.1' ? 'localhost' : settings.host;
+  const shownHost = shown(settings.host);
   url = `${settings.tls ? 'https' : 'http'}://${shownHost}:${port}`;
   const sweep = setInterval(() => sessions.sweep(), SWEEP_MS).unref();
   return {
@@ -131,9 +106,34 @@ export async function startServer(
         http.close(() => resolve());
         http.closeAllConnections();
       });
-      db.$client.close();
+      context.db.$client.close();
     },
   };
+}
+
+/** An address that a person can open. */
+function shown(host: string): string {
+  if (host === '127.0.0.1') return 'localhost';
+  const address = EVERY_ADDRESS.includes(host) ? (ownAddresses()[0] ?? 'localhost') : host;
+  return address.includes(':') ? `[${address}]` : address;
+}
+
+function warnOfBrokenAudit({ audit, log }: Context): void {
+  const seq = audit.firstBroken();
+  if (seq !== null) log.warn(`the audit log was changed by somebody at or before entry ${seq}`);
+}
+
+/** Requests that failed on our side; with LOG_LEVEL=debug every one. Never a header or a body: they hold secrets. */
+function requestLog(logger: Logger) {
+  return pinoHttp({
+    logger,
+    customLogLevel: (_request, response, error) =>
+      error || response.statusCode >= 500 ? 'error' : response.statusCode >= 400 ? 'info' : 'debug',
+    serializers: {
+      req: ({ method, url, remoteAddress }) => ({ method, url, remoteAddress }),
+      res: ({ statusCode }) => ({ statusCode }),
+    },
+  });
 }
 
 function forkArmProcess() {

@@ -29,6 +29,8 @@ export function readSettings(env: NodeJS.ProcessEnv, argv: readonly string[]): S
   const host = env.HOST ?? '127.0.0.1';
   const publicUrl = env.ELBOWROOM_URL ?? null;
   if (publicUrl && !URL.canParse(publicUrl)) throw new Error(`ELBOWROOM_URL is not an address: ${publicUrl}`);
+  if (Boolean(env.TLS_CERT) !== Boolean(env.TLS_KEY))
+    throw new Error('TLS_CERT and TLS_KEY belong together: give both or neither.');
   const tls = env.TLS_CERT && env.TLS_KEY ? { cert: env.TLS_CERT, key: env.TLS_KEY } : null;
   const secure = tls !== null || (publicUrl?.startsWith('https:') ?? false);
   const plainOnNetwork = !LOOPBACK.has(host) && !secure;
@@ -51,7 +53,7 @@ export function readSettings(env: NodeJS.ProcessEnv, argv: readonly string[]): S
   };
 }
 
-/** Four words' worth of chance, easy to type from a terminal. */
+/** 64 random bits in four groups, easy to type from a terminal. */
 export function readablePassword(): string {
   return randomBytes(8).toString('hex').match(/.{4}/g)!.join('-');
 }

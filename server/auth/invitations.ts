@@ -61,34 +61,40 @@ export class Invitations {
     if (gone.changes === 0) throw new HttpProblem(404, 'noSuchInvitation', 'That invitation is not pending.');
   }
 
-  /** Uses an invitation up; of two people with the same link one comes through. */
-  redeem(token: string): Invitation {
-    const now = this.wallMs();
-    const row = this.db
-      .update(invitations)
-      .set({ usedAtMs: now })
-      .where(
-        and(
-          eq(invitations.tokenHash, tokenHash(token)),
-          isNull(invitations.usedAtMs),
-          gt(invitations.expiresAtMs, now),
-        ),
-      )
-      .returning()
-      .get();
-    if (!row)
-      throw new HttpProblem(
-        410,
-        'invitationGone',
-        'This invitation was used, withdrawn or has run out. Ask for a new one.',
-      );
+  /** What a secret invites to, without using it up. @throws HttpProblem 410 */
+  look(token: string): Invitation {
+    const row = this.db.select().from(invitations).where(this.open(token)).get();
+    if (!row) throw gone();
     return asInvitation(row);
   }
 
-  /** The account could not be made after all: the link works again. */
-  giveBack(id: string): void {
-    this.db.update(invitations).set({ usedAtMs: null }).where(eq(invitations.id, id)).run();
+  private open(token: string) {
+    return and(
+      eq(invitations.tokenHash, tokenHash(token)),
+      isNull(invitations.usedAtMs),
+      gt(invitations.expiresAtMs, this.wallMs()),
+    );
   }
+
+  /** Uses an invitation up; of two people with the same link one comes through. */
+  redeem(token: string): Invitation {
+    const row = this.db
+      .update(invitations)
+      .set({ usedAtMs: this.wallMs() })
+      .where(this.open(token))
+      .returning()
+      .get();
+    if (!row) throw gone();
+    return asInvitation(row);
+  }
+}
+
+function gone(): HttpProblem {
+  return new HttpProblem(
+    410,
+    'invitationGone',
+    'This invitation was used, withdrawn or has run out. Ask for a new one.',
+  );
 }
 
 function asInvitation(row: typeof invitations.$inferSelect): Invitation {

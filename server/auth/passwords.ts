@@ -81,12 +81,16 @@ const COMMON = new Set([
   'elbowroom123',
 ]);
 
+/** A shorter e-mail name stands in too many good passwords by chance. */
+const SHORTEST_TELLTALE = 4;
+
 /** Why a new password is not accepted, or null. Length is the schema's matter. */
 export function passwordObjection(password: string, email: string): string | null {
   const plain = password.toLowerCase();
   if (COMMON.has(plain) || /^(.)\1+$/.test(plain))
     return 'This password is on every list of common ones. Choose another.';
-  if (plain.includes(email.split('@')[0]!.toLowerCase()) && plain.length < 16)
+  const mailName = email.split('@')[0]!.toLowerCase();
+  if (mailName.length >= SHORTEST_TELLTALE && plain.includes(mailName) && plain.length < 16)
     return 'This password contains your e-mail name. Choose another.';
   return null;
 }

@@ -27,22 +27,16 @@ export class PeopleStore {
     return row ? asPerson(row) : null;
   }
 
-  /** @throws HttpProblem when the password is too common or the address is taken */
-  async add(draft: { name: string; email: string; role: Role; password: string }): Promise<Person> {
-    const objection = passwordObjection(draft.password, draft.email);
-    if (objection)
-      throw new HttpProblem(400, 'weakPassword', objection, [{ path: 'password', message: objection }]);
-    const email = draft.email.toLowerCase();
-    if (this.db.select().from(people).where(eq(people.email, email)).get())
+  /** @throws HttpProblem when the address is taken */
+  refuseTaken(email: string): void {
+    if (this.db.select().from(people).where(eq(people.email, email.toLowerCase())).get())
       throw new HttpProblem(409, 'emailTaken', 'Somebody with this e-mail address is already on the team.');
-    const row = {
-      id: newId(),
-      name: draft.name,
-      email,
-      role: draft.role,
-      passwordHash: await hashPassword(draft.password),
-      createdAtMs: this.wallMs(),
-    };
+  }
+
+  /** Adds a person at once, so that it can be part of a transaction. @throws HttpProblem when the address is taken */
+  add(draft: { name: string; email: string; role: Role; passwordHash: string }): Person {
+    this.refuseTaken(draft.email);
+    const row = { ...draft, id: newId(), email: draft.email.toLowerCase(), createdAtMs: this.wallMs() };
     this.db.insert(people).values(row).run();
     return this.byId(row.id)!;
   }
@@ -55,7 +49,7 @@ export class PeopleStore {
   }
 
   /** @throws HttpProblem when it would leave the workshop without an owner */
-  change(id: string, change: { role?: Role; disabled?: boolean }): Person {
+  change(id: string, change: { role?: Role; disabled?: boolean }): { person: Person; changed: boolean } {
     return this.db.transaction((tx) => {
       const row = tx.select().from(people).where(eq(people.id, id)).get();
       if (!row) throw new HttpProblem(404, 'noSuchPerson', 'That person is not on the team.');
@@ -73,10 +67,23 @@ export class PeopleStore {
             'A workshop needs an owner. Make somebody else owner first.',
           );
       }
-      tx.update(people).set(change).where(eq(people.id, id)).run();
-      return asPerson({ ...row, ...change });
+      const next = { role: change.role ?? row.role, disabled: change.disabled ?? row.disabled };
+      tx.update(people).set(next).where(eq(people.id, id)).run();
+      const changed = next.role !== row.role || next.disabled !== row.disabled;
+      return { person: asPerson({ ...row, ...next }), changed };
     });
   }
+}
+
+/**
+ * What is stored of a new password.
+ * @throws HttpProblem when it is too common
+ */
+export async function hashNewPassword(password: string, email: string): Promise<string> {
+  const objection = passwordObjection(password, email);
+  if (objection)
+    throw new HttpProblem(400, 'weakPassword', objection, [{ path: 'password', message: objection }]);
+  return hashPassword(password);
 }
 
 /** A hash nothing fits, so that an unknown address costs as much time as a known one. */

@@ -1,6 +1,6 @@
 import { EventEmitter } from 'node:events';
 import type { IncomingHttpHeaders } from 'node:http';
-import { and, eq, lt, ne } from 'drizzle-orm';
+import { eq, lt, or } from 'drizzle-orm';
 import type { Role } from '../../shared/team/roles';
 import type { Database } from '../db/database';
 import { people, sessions } from '../db/schema';
@@ -26,6 +26,7 @@ export class Sessions {
     private readonly wallMs: () => number,
     /** `__Host-` and Secure need TLS; plain HTTP on loopback has neither. */
     private readonly secure: boolean,
+    private readonly log: { warn(message: string): void },
   ) {}
 
   private get cookieName(): string {
@@ -41,19 +42,20 @@ export class Sessions {
   begin(personId: string, address: string): string {
     const token = newToken();
     const now = this.wallMs();
-    this.db
-      .insert(sessions)
-      .values({
-        id: newId(),
-        tokenHash: tokenHash(token),
-        personId,
-        createdAtMs: now,
-        usedAtMs: now,
-        expiresAtMs: now + LIFETIME_MS,
-        address,
-      })
-      .run();
-    this.db.update(people).set({ lastSeenMs: now }).where(eq(people.id, personId)).run();
+    this.db.transaction((tx) => {
+      tx.insert(sessions)
+        .values({
+          id: newId(),
+          tokenHash: tokenHash(token),
+          personId,
+          createdAtMs: now,
+          usedAtMs: now,
+          expiresAtMs: now + LIFETIME_MS,
+          address,
+        })
+        .run();
+      tx.update(people).set({ lastSeenMs: now }).where(eq(people.id, personId)).run();
+    });
     return this.cookie(token, Math.floor(LIFETIME_MS / 1000));
   }
 
@@ -88,34 +90,41 @@ export class Sessions {
     if (!row || row.disabled) return null;
     const now = this.wallMs();
     if (now > row.expiresAtMs || now - row.usedAtMs > IDLE_MS) return null;
-    if (now - row.usedAtMs > TOUCH_MS) {
-      this.db.update(sessions).set({ usedAtMs: now }).where(eq(sessions.id, row.sessionId)).run();
-      this.db.update(people).set({ lastSeenMs: now }).where(eq(people.id, row.id)).run();
-    }
+    if (now - row.usedAtMs > TOUCH_MS) this.touch(row.sessionId, row.id, now);
     const { sessionId, id, name, email } = row;
     return { sessionId, person: { id, name, email, role: row.role as Role } };
   }
 
-  /** Ends every session of a person: sign-out, disabling, a new role, a new password. */
-  endAllOf(personId: string, except?: string): void {
-    const which = except
-      ? and(eq(sessions.personId, personId), ne(sessions.id, except))
-      : eq(sessions.personId, personId);
-    const gone = this.db.delete(sessions).where(which).returning({ id: sessions.id }).all();
+  /** A full disk must not keep a signed-in person from stopping an arm, so failing to note the time is no failure. */
+  private touch(sessionId: string, personId: string, now: number): void {
+    try {
+      this.db.transaction((tx) => {
+        tx.update(sessions).set({ usedAtMs: now }).where(eq(sessions.id, sessionId)).run();
+        tx.update(people).set({ lastSeenMs: now }).where(eq(people.id, personId)).run();
+      });
+    } catch (error) {
+      this.log.warn(`the time of last use could not be written: ${String(error)}`);
+    }
+  }
+
+  /** Ends every session of a person: sign-out, disabling, a new role. */
+  endAllOf(personId: string): void {
+    const gone = this.db
+      .delete(sessions)
+      .where(eq(sessions.personId, personId))
+      .returning({ id: sessions.id })
+      .all();
     for (const { id } of gone) this.ended.emit('ended', id);
   }
 
   /** Takes run-out sessions away; called about once a minute. */
   sweep(): void {
     const now = this.wallMs();
-    const gone = [
-      ...this.db.delete(sessions).where(lt(sessions.expiresAtMs, now)).returning({ id: sessions.id }).all(),
-      ...this.db
-        .delete(sessions)
-        .where(lt(sessions.usedAtMs, now - IDLE_MS))
-        .returning({ id: sessions.id })
-        .all(),
-    ];
+    const gone = this.db
+      .delete(sessions)
+      .where(or(lt(sessions.expiresAtMs, now), lt(sessions.usedAtMs, now - IDLE_MS)))
+      .returning({ id: sessions.id })
+      .all();
     for (const { id } of gone) this.ended.emit('ended', id);
   }
 }

@@ -1,8 +1,8 @@
-import { chmodSync, existsSync, mkdirSync } from 'node:fs';
+import { chmodSync, copyFileSync, existsSync, mkdirSync, rmSync } from 'node:fs';
 import { dirname } from 'node:path';
 import Sqlite from 'better-sqlite3';
 import { type BetterSQLite3Database, drizzle } from 'drizzle-orm/better-sqlite3';
-import { migrateDatabase } from './migrate';
+import { MigrationFailed, migrateDatabase } from './migrate';
 import * as schema from './schema';
 
 export type Database = BetterSQLite3Database<typeof schema> & { $client: Sqlite.Database };
@@ -22,25 +22,41 @@ export function openDatabase(
   mkdirSync(dirname(file), { recursive: true, mode: 0o700 });
   const isNew = !existsSync(file);
   const client = new Sqlite(file);
-  if (isNew) chmodSync(file, 0o600);
+  chmodSync(file, 0o600);
   assertEngine(client);
   client.pragma('busy_timeout = 5000');
   client.pragma('journal_mode = WAL');
   // FULL at every open: the default under WAL may lose what a person was told is saved.
   client.pragma('synchronous = FULL');
   client.pragma('foreign_keys = ON');
+  // Without it REPLACE would take rows away past the triggers that guard them.
+  client.pragma('recursive_triggers = ON');
   const holds: [string, unknown][] = [
     ['journal_mode', 'wal'],
     ['synchronous', 2],
     ['foreign_keys', 1],
+    ['recursive_triggers', 1],
   ];
   for (const [name, value] of holds) {
     const actual = client.pragma(name, { simple: true });
     if (actual !== value)
       throw new Error(`SQLite setting ${name} is ${String(actual)}, not ${String(value)}`);
   }
-  migrateDatabase(client, file, migrationsFolder, isNew, log);
+  try {
+    const copy = migrateDatabase(client, file, migrationsFolder, isNew);
+    if (copy) log(`The tables were brought up to date; the file as it was is kept as ${copy}`);
+  } catch (error) {
+    client.close();
+    if (error instanceof MigrationFailed && error.copy) putBack(error.copy, file);
+    throw error;
+  }
   return drizzle(client, { schema });
+}
+
+/** The file as it was before the migration; its WAL belongs to what failed. */
+function putBack(copy: string, file: string): void {
+  for (const side of ['-wal', '-shm']) rmSync(file + side, { force: true });
+  copyFileSync(copy, file);
 }
 
 function assertEngine(client: Sqlite.Database): void {

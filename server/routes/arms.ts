@@ -89,10 +89,9 @@ export const armRoutes: Route[] = [
     status: 201,
     handle({ context, body, you, address }) {
       const { startFrom, name } = body;
-      const model =
-        startFrom in DEMO_ARMS
-          ? DEMO_ARMS[startFrom as keyof typeof DEMO_ARMS]
-          : context.arms.get(startFrom).model;
+      const model = Object.hasOwn(DEMO_ARMS, startFrom)
+        ? DEMO_ARMS[startFrom as keyof typeof DEMO_ARMS]
+        : context.arms.get(startFrom).model;
       const arm = context.arms.add(
         ArmModel.parse({ ...model, name }),
         you.person.name,

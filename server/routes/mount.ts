@@ -7,13 +7,31 @@ import type { Route } from './route';
 /** Far above any arm or sequence, far below what could hurt. */
 const MAX_BODY = '1mb';
 
-/** Puts the route table onto the app: form of the request, who may, what comes in, what goes out. */
-export function mountRoutes(app: Express, context: Context, routes: readonly Route[]): void {
-  app.use(
-    '/api',
+/** Deeper than any sequence or arm; the checks that follow walk bodies recursively. */
+const MAX_DEPTH = 40;
+
+/** What every request under /api passes first: where it comes from, and the form of its body. */
+export function admitRequests(context: Context): RequestHandler[] {
+  return [
     sameOriginOnly(context),
     express.json({ limit: MAX_BODY, strict: true, type: 'application/json' }),
-  );
+    (request, _response, next) =>
+      next(
+        deeperThan(request.body, MAX_DEPTH)
+          ? new HttpProblem(400, 'tooDeep', 'That is nested deeper than anything this server knows.')
+          : undefined,
+      ),
+  ];
+}
+
+/** Never goes deeper than `depth` itself. */
+function deeperThan(value: unknown, depth: number): boolean {
+  if (typeof value !== 'object' || value === null) return false;
+  return depth === 0 || Object.values(value).some((inner) => deeperThan(inner, depth - 1));
+}
+
+/** Puts the route table onto the app: who may, what comes in, what goes out. */
+export function mountRoutes(app: Express, context: Context, routes: readonly Route[]): void {
   for (const route of routes) app[route.method](`/api${route.path}`, handler(context, route));
 }
 

@@ -124,7 +124,7 @@ export const poseRoutes: Route[] = [
         { name: body.name, note: body.note ?? '', tags: body.tags ?? [] },
         {
           q: body.q,
-          gripper: body.gripper ?? null,
+          gripper: arm.model.gripper ? (body.gripper ?? null) : null,
           trust: 'declared',
           origin: 'typed',
           by: you.person.name,
@@ -150,9 +150,16 @@ export const poseRoutes: Route[] = [
     params: armParams,
     query: z.object({ format: z.enum(['json', 'csv']).default('json') }),
     response: null,
-    handle({ context, params, query, response }) {
+    handle({ context, params, query, response, you, address }) {
       const arm = context.arms.get(params.armId);
       const poses = context.poses.list(arm.id);
+      context.audit.append({
+        who: you.person.name,
+        act: 'pose.export',
+        arm: arm.name,
+        detail: query.format,
+        address,
+      });
       const { joints } = arm.model;
       response.attachment(`${fileName(arm.name, 'poses')}.${query.format}`);
       if (query.format === 'csv') {
@@ -208,7 +215,7 @@ export const poseRoutes: Route[] = [
           label: { name, tags, note },
           position: {
             q,
-            gripper,
+            gripper: arm.model.gripper ? gripper : null,
             trust: 'declared' as const,
             origin: 'imported' as const,
             by: you.person.name,

@@ -46,8 +46,10 @@ function asProblem(error: unknown): HttpProblem | null {
   const { type, status } = (error ?? {}) as { type?: string; status?: number };
   if (type === 'entity.too.large')
     return new HttpProblem(413, 'tooLarge', 'That is more than this server takes at once.');
-  if (type?.startsWith('entity.') || (status && status >= 400 && status < 500))
+  if (type?.startsWith('entity.'))
     return new HttpProblem(400, 'badJson', 'The request is not well-formed JSON.');
+  if (status && status >= 400 && status < 500)
+    return new HttpProblem(status, 'badRequest', 'The request is not well-formed.');
   return null;
 }
 

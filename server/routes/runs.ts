@@ -22,8 +22,15 @@ export const runRoutes: Route[] = [
     params: armParams,
     query: z.object({ format: z.enum(['json', 'csv']).default('csv') }),
     response: null,
-    handle({ context, params, query, response }) {
+    handle({ context, params, query, response, you, address }) {
       const arm = context.arms.get(params.armId);
+      context.audit.append({
+        who: you.person.name,
+        act: 'run.export',
+        arm: arm.name,
+        detail: query.format,
+        address,
+      });
       const runs = context.runs.list(arm.id).map((r) => context.runs.get(arm.id, r.id));
       response.attachment(`${fileName(arm.name, 'runs')}.${query.format}`);
       if (query.format === 'json') {

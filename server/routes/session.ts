@@ -1,6 +1,7 @@
 import rateLimit, { ipKeyGenerator } from 'express-rate-limit';
 import type { z } from 'zod';
 import { AcceptInvitation, FirstOwner, SessionInfo, SignIn } from '../../shared/api/resources';
+import { hashNewPassword } from '../auth/people-store';
 import type { SignedIn } from '../auth/sessions';
 import type { Context } from '../context';
 import { HttpProblem } from './problem';
@@ -101,10 +102,16 @@ export const sessionRoutes: Route[] = [
         throw new HttpProblem(403, 'wrongCode', 'That is not the code the server printed when it started.', [
           { path: 'code', message: 'not the code the server printed' },
         ]);
-      const { name, email, password } = body;
-      const person = await context.people.add({ name, email, password, role: 'owner' });
+      const { name, email } = body;
+      const passwordHash = await hashNewPassword(body.password, email);
+      // Hashing takes a while: of two people with the code, the first through here is the owner.
+      const person = context.db.transaction(() => {
+        if (context.people.any())
+          throw new HttpProblem(409, 'setUpAlready', 'This workshop has an owner already. Sign in.');
+        context.workshop.set(body.workshop, false);
+        return context.people.add({ name, email, passwordHash, role: 'owner' });
+      });
       context.setupCode.spend();
-      context.workshop.set(body.workshop, false);
       context.audit.append({ who: person.name, act: 'setup', address });
       signInAs(call, person.id);
       return sessionInfo(context, person.id);
@@ -120,17 +127,14 @@ export const sessionRoutes: Route[] = [
     status: 201,
     async handle(call) {
       const { context, body, address } = call;
-      const invitation = context.invitations.redeem(body.token);
-      try {
-        const { email, name, role } = invitation;
-        const person = await context.people.add({ email, name, role, password: body.password });
-        context.audit.append({ who: person.name, act: 'invitation.accept', detail: role, address });
-        signInAs(call, person.id);
-        return sessionInfo(context, person.id);
-      } catch (error) {
-        context.invitations.giveBack(invitation.id);
-        throw error;
-      }
+      const passwordHash = await hashNewPassword(body.password, context.invitations.look(body.token).email);
+      const person = context.db.transaction(() => {
+        const { email, name, role } = context.invitations.redeem(body.token);
+        return context.people.add({ email, name, role, passwordHash });
+      });
+      context.audit.append({ who: person.name, act: 'invitation.accept', detail: person.role, address });
+      signInAs(call, person.id);
+      return sessionInfo(context, person.id);
     },
   }),
 ];

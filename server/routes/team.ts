@@ -10,6 +10,13 @@ import {
 } from '../../shared/api/resources';
 import { defineRoute, type Route } from './route';
 
+/** A change of a person as the audit log says it: "role teacher, disabled". */
+function changeWords({ role, disabled }: z.infer<typeof PersonChange>): string {
+  const words = role ? [`role ${role}`] : [];
+  if (disabled !== undefined) words.push(disabled ? 'disabled' : 'let in again');
+  return words.join(', ') || 'nothing';
+}
+
 const WorkshopName = z.strictObject({ name: z.string().trim().min(1).max(60) });
 
 export const teamRoutes: Route[] = [
@@ -30,15 +37,14 @@ export const teamRoutes: Route[] = [
     body: PersonChange,
     response: Person,
     handle({ context, params, body, you, address }) {
-      const person = context.people.change(params.personId, body);
-      context.sessions.endAllOf(
-        person.id,
-        you.person.id === person.id && !person.disabled ? you.sessionId : undefined,
-      );
+      const { person, changed } = context.people.change(params.personId, body);
+      if (!changed) return person;
+      // One's own as well: an open socket carries the role it was opened with.
+      context.sessions.endAllOf(person.id);
       context.audit.append({
         who: you.person.name,
         act: 'person.change',
-        detail: `${person.name}: ${JSON.stringify(body)}`,
+        detail: `${person.name}: ${changeWords(body)}`,
         address,
       });
       return person;
@@ -61,6 +67,7 @@ export const teamRoutes: Route[] = [
     response: Invitation,
     status: 201,
     async handle({ context, body, you, address }) {
+      context.people.refuseTaken(body.email);
       const { invitation, token } = context.invitations.make(body, you.person);
       const workshop = context.workshop.get().name;
       // The secret stands in the fragment, which browsers do not send to any server.
@@ -69,6 +76,7 @@ export const teamRoutes: Route[] = [
         to: invitation.email,
         subject: `${you.person.name} invites you to ${workshop}`,
         body: `Hello ${invitation.name},\n\n${you.person.name} invites you to ${workshop} on Elbowroom, as ${invitation.role}.\n\nOpen this link within seven days and choose a password. It works once:\n${link}\n`,
+        secret: token,
       });
       context.audit.append({
         who: you.person.name,
