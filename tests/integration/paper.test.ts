@@ -175,6 +175,8 @@ describe('arms', () => {
   it('describe themselves in OpenAPI 3.1, every route of them', async () => {
     const { body } = await call('GET', '/openapi.json');
     expect(body.openapi).toBe('3.1.0');
-    expect(Object.keys(body.paths as object)).toContain('/api/arms/{armId}/poses/{poseId}/reteach');
+    expect(Object.keys(body.paths as unknown as object)).toContain(
+      '/api/arms/{armId}/poses/{poseId}/reteach',
+    );
   });
 });
