@@ -1,8 +1,9 @@
 import { useMemo } from 'react';
-import { BufferAttribute, BufferGeometry } from 'three';
+import { BufferAttribute, BufferGeometry, CylinderGeometry } from 'three';
+import { mergeGeometries } from 'three/addons/utils/BufferGeometryUtils.js';
 import type { BenchObject } from '../../shared/arm/model';
 import { useInks } from './inks';
-import { Box, Cylinder } from './Solid';
+import { Box, Cylinder, LINE, Outlined } from './Solid';
 
 const HALF = 0.6;
 const CELL = 0.05;
@@ -41,20 +42,30 @@ export function Bench({ objects }: { objects: readonly BenchObject[] }) {
   ));
 }
 
-/** Three rows of four. */
+/** Three rows of four, as two drawings and not as twenty-four: a slow machine draws them as often as the arm. */
 function Vials({ size }: { size: readonly [number, number, number] }) {
-  const places: [number, number][] = [];
-  for (let row = 0; row < 3; row++)
-    for (let column = 0; column < 4; column++)
-      places.push([((column + 0.5) / 4 - 0.5) * size[0] * 0.9, ((row + 0.5) / 3 - 0.5) * size[1] * 0.85]);
-  return places.map(([x, y]) => (
-    <group key={`${x} ${y}`} position={[x, y, size[2] / 2]} rotation={UPRIGHT}>
-      <group position={[0, 0.009, 0]}>
-        <Cylinder radius={0.008} height={0.018} fill="card" />
-      </group>
-      <group position={[0, 0.023, 0]}>
-        <Cylinder radius={0.009} height={0.01} fill="ink2" />
-      </group>
-    </group>
-  ));
+  const [width, depth, height] = size;
+  const { bodies, caps } = useMemo(() => {
+    const at = (radius: number, tall: number, up: number) => {
+      const all = [];
+      for (let row = 0; row < 3; row++)
+        for (let column = 0; column < 4; column++) {
+          const one = new CylinderGeometry(radius, radius, tall, 14).rotateX(Math.PI / 2);
+          const x = ((column + 0.5) / 4 - 0.5) * width * 0.9;
+          const y = ((row + 0.5) / 3 - 0.5) * depth * 0.85;
+          all.push(one.translate(x, y, height / 2 + up));
+        }
+      return mergeGeometries(all);
+    };
+    return {
+      bodies: { shape: at(0.008, 0.018, 0.009), hull: at(0.008 + LINE, 0.018 + 2 * LINE, 0.009) },
+      caps: { shape: at(0.009, 0.01, 0.023), hull: at(0.009 + LINE, 0.01 + 2 * LINE, 0.023) },
+    };
+  }, [width, depth, height]);
+  return (
+    <>
+      <Outlined {...bodies} fill="card" />
+      <Outlined {...caps} fill="ink2" />
+    </>
+  );
 }

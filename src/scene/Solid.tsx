@@ -11,7 +11,7 @@ import {
 import { useInks } from './inks';
 
 /** Width of the ink outline, m: about the sheet's line at the usual distance. */
-const LINE = 0.0011;
+export const LINE = 0.0011;
 
 interface Style {
   /** Quiet: drawn in the edge colour, for what is not known. */
@@ -20,7 +20,7 @@ interface Style {
 }
 
 /** Paper inside, an ink line around its silhouette (a slightly larger copy seen from behind), ink along its edges. */
-function Outlined({
+export function Outlined({
   shape,
   hull,
   faint,
@@ -66,9 +66,9 @@ export function Cylinder({
   ...style
 }: { radius: number; height: number; top?: number } & Style) {
   const upper = top ?? radius;
-  const shape = useMemo(() => new CylinderGeometry(upper, radius, height, 28), [upper, radius, height]);
+  const shape = useMemo(() => new CylinderGeometry(upper, radius, height, 20), [upper, radius, height]);
   const hull = useMemo(
-    () => new CylinderGeometry(upper + LINE, radius + LINE, height + 2 * LINE, 28),
+    () => new CylinderGeometry(upper + LINE, radius + LINE, height + 2 * LINE, 20),
     [upper, radius, height],
   );
   return <Outlined shape={shape} hull={hull} {...style} />;

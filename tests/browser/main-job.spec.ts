@@ -3,7 +3,6 @@ import { expect, test } from './support/product';
 import {
   atRest,
   declare,
-  holdWhile,
   newest,
   openArm,
   setCeiling,

@@ -92,7 +92,7 @@ test('an observer in a second browser sees the arm move, cannot move it, and can
   let seenMoving = false;
   // Ines holds; as soon as Otis sees the arm move on his own page, he stops it.
   await holdUntil(ines, button.or(ines.locator('[data-joint="0"] .held')), async () => {
-    const moving = (await otis.locator('.c-motors').innerText()).includes('moving');
+    const moving = ((await otis.locator('.c-motors').textContent()) ?? '').includes('moving');
     if (moving && Math.abs((await newest(otis)).q[0]! - before) > 0.01) {
       seenMoving = true;
       await otis
