@@ -13,6 +13,10 @@ export class ApiError extends Error {
   }
 }
 
+const AWAY = 'The server does not answer. Check that it runs, then try again.';
+/** What a proxy in front answers while the server behind it is away. */
+const GATEWAY_STATUSES = [502, 503, 504];
+
 /** Told when the server no longer knows who we are. */
 let onSignedOut: () => void = () => {};
 export function whenSignedOut(listener: () => void): void {
@@ -37,7 +41,7 @@ async function call<S extends z.ZodType>(
     });
   } catch (error) {
     if (signal?.aborted) throw error;
-    throw new ApiError(0, 'offline', 'The server does not answer. Check that it runs, then try again.');
+    throw new ApiError(0, 'offline', AWAY);
   }
   if (!response.ok) throw await asError(response);
   if (schema === null || response.status === 204) return undefined as z.output<S>;
@@ -47,6 +51,8 @@ async function call<S extends z.ZodType>(
 async function asError(response: Response): Promise<ApiError> {
   const parsed = Problem.safeParse(await response.json().catch(() => null));
   if (response.status === 401 && (!parsed.success || parsed.data.code === 'notSignedIn')) onSignedOut();
+  if (!parsed.success && GATEWAY_STATUSES.includes(response.status))
+    return new ApiError(response.status, 'offline', AWAY);
   if (!parsed.success)
     return new ApiError(
       response.status,

@@ -1,5 +1,5 @@
 import { Dialog as Radix } from 'radix-ui';
-import { type ReactNode, useEffect, useLayoutEffect, useRef } from 'react';
+import { type KeyboardEvent, type ReactNode, useEffect, useLayoutEffect, useRef } from 'react';
 
 /** Everything the veil lies over; Stop and the live regions are not part of it. */
 const COVERED = '.page > :not(.strip, .vh), .strip > :not(.stopcell)';
@@ -14,6 +14,18 @@ function useCovered(open: boolean): void {
       for (const part of covered) part.inert = false;
     };
   }, [open]);
+}
+
+/** Radix leads Tab around in a circle; after the last thing in the question comes Stop, and then the first again. */
+function tabToStop(event: KeyboardEvent<HTMLElement>): void {
+  if (event.key !== 'Tab' || event.shiftKey) return;
+  const reachable = ':is(a[href], button, input, select, textarea):not(:disabled)';
+  const last = [...event.currentTarget.querySelectorAll(reachable)].at(-1);
+  const stop = document.querySelector<HTMLElement>('[data-stop]');
+  if (!stop || document.activeElement !== last) return;
+  event.preventDefault();
+  event.stopPropagation();
+  stop.focus();
 }
 
 /**
@@ -44,6 +56,7 @@ export function Dialog({
         <Radix.Content
           className="dialog"
           aria-describedby={undefined}
+          onKeyDownCapture={tabToStop}
           onCloseAutoFocus={(event) => {
             // Without a trigger of its own Radix would leave the focus nowhere.
             event.preventDefault();

@@ -1,4 +1,4 @@
-import type { FieldValues, Path, UseFormReturn } from 'react-hook-form';
+import type { FieldError, FieldValues, Path, UseFormReturn } from 'react-hook-form';
 import { ApiError, errorText } from '../api/client';
 
 /**
@@ -17,4 +17,10 @@ export function placeErrors<Values extends FieldValues>(
   });
   if (said.length === 0 || placeable.length < said.length)
     form.setError('root.server', { type: 'server', message: errorText(error) });
+}
+
+/** What is wrong with a new password: the server's objection in its words, else the rule. */
+export function passwordError(error: FieldError | undefined): string | undefined {
+  if (!error) return undefined;
+  return error.type === 'server' ? error.message : 'Use at least 10 characters (and at most 200).';
 }

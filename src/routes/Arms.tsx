@@ -1,4 +1,3 @@
-import '../features/arms/workshop-arms.css';
 import { useState } from 'react';
 import { may } from '../../shared/team/roles';
 import { useArms } from '../api/arms';

@@ -4,7 +4,7 @@ import { Navigate, useNavigate } from 'react-router-dom';
 import { FirstOwner } from '../../shared/api/resources';
 import { useFirstOwner, useSession } from '../api/session';
 import { Field } from '../components/Field';
-import { placeErrors } from '../components/form-errors';
+import { passwordError, placeErrors } from '../components/form-errors';
 import { Message } from '../components/Message';
 import { TitleBlock } from '../features/session/TitleBlock';
 
@@ -67,7 +67,7 @@ export function Component() {
           type="password"
           autoComplete="new-password"
           help="At least 10 characters; pasting is fine."
-          error={errors.password?.message}
+          error={passwordError(errors.password)}
           {...form.register('password')}
         />
         {errors.root?.server && <Message kind="fault">{errors.root.server.message}</Message>}

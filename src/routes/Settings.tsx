@@ -1,4 +1,3 @@
-import '../features/arms/workshop-arms.css';
 import { may } from '../../shared/team/roles';
 import { useSession } from '../api/session';
 import { useTitle } from '../components/use-title';

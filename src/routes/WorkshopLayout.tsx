@@ -1,3 +1,4 @@
+import '../features/arms/workshop-arms.css';
 import { Outlet } from 'react-router-dom';
 import { may } from '../../shared/team/roles';
 import { useArms } from '../api/arms';

@@ -65,11 +65,27 @@ describe('the API client', () => {
   });
 
   it('says so when a refusal gives no reason that can be read', async () => {
-    serverAnswers(502, '<html>Bad gateway</html>', 'text/html');
+    serverAnswers(500, '<html>Oh dear</html>', 'text/html');
     const error = await failure(api.get('/people', Thing));
-    expect(error).toMatchObject({ status: 502, code: 'unknown' });
-    expect(errorText(error)).toContain('502');
+    expect(error).toMatchObject({ status: 500, code: 'unknown' });
+    expect(errorText(error)).toContain('500');
     expect(errorText(error)).not.toContain('<html>');
+  });
+
+  // RFC 9110 §15.6.3–5: the answers of a gateway whose server is away.
+  it.each([502, 503, 504])(
+    'says that the server does not answer when a proxy says %s in its place',
+    async (status) => {
+      serverAnswers(status, '<html>Bad gateway</html>', 'text/html');
+      const error = await failure(api.get('/people', Thing));
+      expect(error).toMatchObject({ status, code: 'offline' });
+      expect(errorText(error)).toMatch(/does not answer/);
+    },
+  );
+
+  it('passes on the words of a server that is only not ready', async () => {
+    serverAnswers(503, { ...PROBLEM, status: 503, code: 'notReady', detail: 'The arm is waking up.' });
+    expect(errorText(await failure(api.get('/people', Thing)))).toBe('The arm is waking up.');
   });
 
   it('says that the server does not answer when it cannot be reached', async () => {

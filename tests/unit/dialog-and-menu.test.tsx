@@ -30,7 +30,7 @@ function Page({ onStop }: { onStop: () => void }) {
       <footer className="strip">
         <div className="cell">Motors</div>
         <section className="stopcell">
-          <button type="button" onClick={onStop}>
+          <button type="button" data-stop onClick={onStop}>
             Stop
           </button>
         </section>
@@ -56,6 +56,16 @@ describe('a question above the sheet', () => {
     await person.click(screen.getByRole('button', { name: 'No' }));
     expect(covered()).toEqual([]);
     await waitFor(() => expect(ask).toHaveFocus());
+  });
+
+  it('leads Tab from its last button to Stop, and not around it', async () => {
+    render(<Page onStop={() => {}} />);
+    const person = userEvent.setup();
+    await person.click(screen.getByRole('button', { name: 'Ask' }));
+    await person.tab();
+    expect(screen.getByRole('button', { name: 'Stop' })).toHaveFocus();
+    await person.tab();
+    expect(screen.getByRole('button', { name: 'No' })).toHaveFocus();
   });
 
   it('stays on Esc, which is Stop', async () => {

@@ -15,6 +15,7 @@ export function TitleBlock({
 }: {
   /** What this sheet is, as the title block and the browser's tab name it. */
   sheet: string;
+  /** Empty before it has a name, or before the server said it. */
   workshop: string;
   intro: string;
   children: ReactNode;
@@ -33,7 +34,7 @@ export function TitleBlock({
           </text>
         </svg>
         <div className="nt">
-          <p className="big">{workshop || 'A workshop'}</p>
+          <p className="big">{workshop || sheet}</p>
           <p>{intro}</p>
         </div>
         <div className="tb">

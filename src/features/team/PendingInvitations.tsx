@@ -7,13 +7,12 @@ import { ago, when } from '../../components/when';
 export function PendingInvitations() {
   const invitations = useInvitations(true);
   const withdraw = useWithdrawInvitation();
-  if (!invitations.data?.length && !invitations.isError) return null;
+  if (!invitations.data?.length) return null;
   return (
     <section aria-labelledby="waiting-invitations">
       <h2 className="h2" id="waiting-invitations">
         Invitations waiting
       </h2>
-      {invitations.isError && <Message kind="fault">{errorText(invitations.error)}</Message>}
       {withdraw.isError && <Message kind="fault">{errorText(withdraw.error)}</Message>}
       <table>
         <thead>
