@@ -1,5 +1,5 @@
 import { existsSync } from 'node:fs';
-import express, { type Express, type RequestHandler } from 'express';
+import express, { type Express, type Request, type RequestHandler } from 'express';
 import helmet from 'helmet';
 import type { Context } from './context';
 import { routes } from './routes';
@@ -42,7 +42,11 @@ export function createApp(context: Context, options: AppOptions): Express {
           // Travel bars and plots place things by style attributes.
           styleSrc: ["'self'", "'unsafe-inline'"],
           imgSrc: ["'self'", 'data:', 'blob:'],
-          connectSrc: ["'self'"],
+          // Older browsers do not take 'self' for the socket of the same place. The host was checked above.
+          connectSrc: [
+            "'self'",
+            (request) => `${options.secure ? 'wss' : 'ws'}://${(request as Request).headers.host}`,
+          ],
           objectSrc: ["'none'"],
           baseUri: ["'none'"],
           frameAncestors: ["'none'"],

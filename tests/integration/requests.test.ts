@@ -205,6 +205,8 @@ describe('every answer', () => {
     ])
       expect(policy.split(';').map((d) => d.trim())).toContain(directive);
     expect(policy).not.toContain('upgrade-insecure-requests');
+    // The socket of this very host and port, and no other.
+    expect(policy.split(';')).toContain(`connect-src 'self' ${server.url.replace('http', 'ws')}`);
     expect(headers['x-content-type-options']).toBe('nosniff');
     expect(headers['referrer-policy']).toBe('same-origin');
     expect(headers['access-control-allow-origin']).toBeUndefined();
