@@ -3,48 +3,52 @@ import type { ArmModel } from '../shared/arm/model';
 import { CARRIES_BELOW } from '../shared/arm/motion-rules';
 import { inverseDynamics } from '../shared/dynamics';
 import { type Chain, compileChain } from '../shared/kinematics';
+import type { DriveTruth } from './drive-truth';
 import { Servo } from './servo';
 import { Stepper } from './stepper';
 
 export interface VirtualArmOptions {
   /** Where the joints really are at power-up, rad or m. */
-  truth: readonly number[];
+  positions: readonly number[];
   counts: readonly number[];
-  /** Per joint how strong the motor really is, 1 = as modelled. */
-  strength?: readonly number[];
+  /** Per joint, how it differs from its model. */
+  truths?: readonly DriveTruth[];
 }
 
 /** The simulated mechanics: where the joints really are, as against where the board counts them. */
 export class VirtualArm {
   private readonly chain: Chain;
   private readonly drives: (Stepper | Servo)[];
-  private readonly truthNow: number[];
+  private readonly positions: number[];
+  private readonly qd: Float64Array;
+  private readonly qdd: Float64Array;
   private readonly asked: Float64Array;
-  private readonly zeros: Float64Array;
 
   constructor(
     private readonly model: ArmModel,
     options: VirtualArmOptions,
   ) {
     this.chain = compileChain(model);
-    this.truthNow = [...options.truth];
-    this.asked = new Float64Array(model.joints.length);
-    this.zeros = new Float64Array(model.joints.length);
+    this.positions = [...options.positions];
+    const zeros = () => new Float64Array(model.joints.length);
+    this.qd = zeros();
+    this.qdd = zeros();
+    this.asked = zeros();
     this.drives = model.joints.map((joint, i) => {
-      const strength = options.strength?.[i] ?? 1;
+      const truth = options.truths?.[i] ?? {};
       return joint.drive.kind === 'servo'
-        ? new Servo(joint, options.truth[i]!, strength)
-        : new Stepper(joint, options.truth[i]!, options.counts[i]!, strength);
+        ? new Servo(joint, options.positions[i]!, truth)
+        : new Stepper(joint, options.positions[i]!, options.counts[i]!, truth);
     });
   }
 
+  /** Where the joints really are, rad or m; the same array at every call. */
   truth(): readonly number[] {
-    return this.truthNow;
+    return this.positions;
   }
 
   recount(joint: number, before: number, after: number): void {
-    const drive = this.drives[joint];
-    if (drive instanceof Stepper) drive.recount(before, after);
+    this.drives[joint]!.recount(before, after);
   }
 
   /** @param counts - where the board counts each joint at the end of these dt seconds */
@@ -56,30 +60,17 @@ export class VirtualArm {
     gripper: number | null,
     dt: number,
   ): void {
-    const { payload } = this.model;
+    const { payload, joints } = this.model;
+    for (const [i, { gain }] of this.drives.entries()) {
+      this.qd[i] = energised[i] ? gain * speeds[i]! : 0;
+      this.qdd[i] = energised[i] ? gain * accelerations[i]! : 0;
+    }
     const carries = payload && (gripper === null || gripper < CARRIES_BELOW) ? payload : null;
-    const anyOn = energised.some(Boolean);
-    inverseDynamics(
-      this.chain,
-      this.truthNow,
-      anyOn ? speeds : this.zeros,
-      anyOn ? accelerations : this.zeros,
-      {
-        payload: carries,
-        out: this.asked,
-      },
-    );
+    inverseDynamics(this.chain, this.positions, this.qd, this.qdd, { payload: carries, out: this.asked });
     for (const [i, drive] of this.drives.entries()) {
-      const joint = this.model.joints[i]!;
-      const on = energised[i]!;
-      const asked = this.asked[i]! + (on ? reflectedInertia(joint.drive) * accelerations[i]! : 0);
-      if (drive instanceof Stepper) {
-        drive.advance(counts[i]!, speeds[i]!, asked, on, dt);
-        this.truthNow[i] = drive.truth(counts[i]!);
-      } else {
-        drive.advance(counts[i]!, asked, on, dt);
-        this.truthNow[i] = drive.truth();
-      }
+      const asked = this.asked[i]! + reflectedInertia(joints[i]!.drive) * this.qdd[i]!;
+      drive.advance(counts[i]!, this.qd[i]!, asked, energised[i]!, dt);
+      this.positions[i] = drive.truth(counts[i]!);
     }
   }
 }

@@ -1,4 +1,6 @@
 import type { ArmModel } from '../shared/arm/model';
+import { Axes } from './axes';
+import type { DriveTruth } from './drive-truth';
 import { VirtualArm } from './virtual-arm';
 
 /** What the board reports; the link hands it on as it is. */
@@ -11,7 +13,7 @@ export interface VirtualBoardSample {
   gripper: number | null;
   moving: boolean;
   latched: boolean;
-  faults: ('watchdog' | 'underrun' | 'limit' | 'driver' | 'brownOut')[];
+  faults: VirtualBoardFault[];
   switches: (boolean | null)[];
   measured: null[];
   truth: number[];
@@ -19,65 +21,65 @@ export interface VirtualBoardSample {
   inputs: boolean[];
   outputs: boolean[];
 }
+export type VirtualBoardFault = 'watchdog' | 'underrun' | 'limit' | 'driver' | 'brownOut';
 
 export interface VirtualBoardOptions {
   model: ArmModel;
   /** 0 ≤ x < 1, seeded by the caller. */
   random: () => number;
-  strength?: readonly number[];
+  /** Per joint, how it differs from its model. */
+  truths?: readonly DriveTruth[];
 }
 
 /** The board stops the arm by itself when nothing came for this long, s. */
 const WATCHDOG_S = 0.25;
-const STILL = 1e-9;
 
 /**
- * A microcontroller in the same process: takes set-points, counts, ramps down by itself on a stop or when
- * nothing comes any more, and knows switches. Its arm is simulated. Time passes only in `advance`.
+ * A microcontroller in the same process: takes one set-point a tick, counts, checks what it is told, ramps down
+ * and latches by itself on a stop, on nonsense, or when nothing comes any more, and knows switches. Its arm is
+ * simulated. Time passes only in `advance`.
  */
 export class VirtualBoard {
   private t = 0;
   private bootId = 1;
   private silentS = 0;
-  private readonly counts: number[];
-  private readonly speeds: number[];
-  private readonly accelerations: number[];
+  private readonly axes: Axes;
   private readonly energised: boolean[];
   private gripperEnergised = false;
   private gripper: number | null;
+  /** The one set-point that is buffered. */
   private next: { q: readonly number[]; gripper: number | null } | null = null;
   private latched = false;
-  private faults: VirtualBoardSample['faults'] = [];
+  private faults: VirtualBoardFault[] = [];
   private readonly watching: boolean[];
   private readonly edges: (number | null)[];
   private readonly arm: VirtualArm;
 
   constructor(private readonly options: VirtualBoardOptions) {
-    const { joints, gripper } = options.model;
-    const zeros = () => joints.map(() => 0);
-    this.counts = zeros();
-    this.speeds = zeros();
-    this.accelerations = zeros();
+    const { model, random, truths } = options;
+    const { joints, gripper } = model;
+    this.axes = new Axes(model);
     this.energised = joints.map(() => false);
     this.gripper = gripper ? 1 : null;
     this.watching = joints.map(() => false);
     this.edges = joints.map(() => null);
     // Left as somebody put it down: somewhere inside its range, lower rather than higher.
-    const truth = joints.map(
-      ({ limits }) => limits.lower + (0.15 + 0.5 * options.random()) * (limits.upper - limits.lower),
+    const positions = joints.map(
+      ({ limits }) => limits.lower + (0.15 + 0.5 * random()) * (limits.upper - limits.lower),
     );
-    this.arm = new VirtualArm(options.model, { truth, counts: this.counts, strength: options.strength });
+    this.arm = new VirtualArm(model, { positions, counts: this.axes.counts, truths });
   }
 
   setpoint(q: readonly number[], gripper: number | null): void {
     this.silentS = 0;
-    if (this.latched) return;
-    this.next = { q, gripper };
+    if (!this.latched) this.next = { q, gripper };
   }
 
   energise(joint: number, assumed: number): void {
-    this.declare(joint, assumed);
+    this.recount(joint, assumed);
+    this.axes.counted[joint] = false;
     this.energised[joint] = true;
+    this.silentS = 0;
   }
 
   energiseGripper(opening: number): void {
@@ -89,18 +91,25 @@ export class VirtualBoard {
     this.energised.fill(false);
     this.gripperEnergised = false;
     this.next = null;
-    this.speeds.fill(0);
-    this.accelerations.fill(0);
+    this.axes.halt();
+    this.axes.counted.fill(false);
   }
 
   /** The count reads `q` from now on; the arm does not move. */
   declare(joint: number, q: number): void {
-    this.arm.recount(joint, this.counts[joint]!, q);
-    this.counts[joint] = q;
+    this.recount(joint, q);
+    this.axes.counted[joint] = true;
+  }
+
+  private recount(joint: number, q: number): void {
+    this.arm.recount(joint, this.axes.counts[joint]!, q);
+    this.axes.counts[joint] = q;
     this.next = null;
   }
 
+  /** Looking for a switch, a count says nothing about the mechanical range; a declaration ends that. */
   watchSwitch(joint: number): void {
+    this.axes.counted[joint] = false;
     this.watching[joint] = true;
     this.edges[joint] = null;
   }
@@ -112,7 +121,7 @@ export class VirtualBoard {
   }
 
   clear(): void {
-    if (this.speeds.some((v) => Math.abs(v) > STILL)) return;
+    if (this.axes.moving) return;
     this.latched = false;
     this.faults = [];
     this.silentS = 0;
@@ -121,7 +130,7 @@ export class VirtualBoard {
   /** A brown-out: everything off, count lost, the arm left to gravity. */
   restart(): void {
     this.motorsOff();
-    for (let i = 0; i < this.counts.length; i++) this.declare(i, 0);
+    for (let i = 0; i < this.energised.length; i++) this.recount(i, 0);
     this.latched = false;
     this.faults = [];
     this.bootId++;
@@ -130,35 +139,29 @@ export class VirtualBoard {
   advance(dt: number): void {
     this.t += dt;
     this.silentS += dt;
-    const on = this.energised.some(Boolean);
-    if (on && this.silentS > WATCHDOG_S && !this.latched) {
-      this.stop();
-      this.faults = ['watchdog'];
-    }
-    const before = this.arm.truth().slice();
-    const countsBefore = this.counts.slice();
-    if (on) this.moveCounts(dt);
-    this.arm.advance(this.counts, this.speeds, this.accelerations, this.energised, this.gripper, dt);
-    this.latchEdges(before, countsBefore);
+    const truthBefore = this.arm.truth().slice();
+    const countsBefore = this.axes.counts.slice();
+    if (this.energised.some(Boolean)) this.move(dt);
+    const { counts, speeds, accelerations } = this.axes;
+    this.arm.advance(counts, speeds, accelerations, this.energised, this.gripper, dt);
+    this.latchEdges(truthBefore, countsBefore);
   }
 
-  private moveCounts(dt: number): void {
-    const next = this.latched ? null : this.next;
-    // Own ramp: every axis loses speed in the same time, at the hardest within each axis' acceleration.
-    let rampTime = 0;
-    if (!next)
-      for (const [i, joint] of this.options.model.joints.entries())
-        rampTime = Math.max(rampTime, Math.abs(this.speeds[i]!) / joint.limits.acceleration);
-    const keep = rampTime > dt ? 1 - dt / rampTime : 0;
-    for (let i = 0; i < this.counts.length; i++) {
-      if (!this.energised[i]) continue;
-      const speed = next ? (next.q[i]! - this.counts[i]!) / dt : this.speeds[i]! * keep;
-      this.accelerations[i] = (speed - this.speeds[i]!) / dt;
-      this.speeds[i] = speed;
-      this.counts[i] = next ? next.q[i]! : this.counts[i]! + speed * dt;
-    }
-    if (next?.gripper !== undefined && next.gripper !== null && this.gripperEnergised)
-      this.gripper = next.gripper;
+  private move(dt: number): void {
+    const { next, axes } = this;
+    this.next = null;
+    if (this.latched) return axes.ramp(dt);
+    if (next && !axes.follow(next.q, this.energised, dt)) this.fail('limit');
+    else if (!next && this.silentS > WATCHDOG_S) this.fail('watchdog');
+    else if (!next && axes.moving) this.fail('underrun');
+    if (this.latched) axes.ramp(dt);
+    else if (next && next.gripper !== null && this.gripperEnergised) this.gripper = next.gripper;
+    else if (!next) axes.halt();
+  }
+
+  private fail(fault: VirtualBoardFault): void {
+    this.stop();
+    this.faults = [fault];
   }
 
   private switchAt(joint: number): { position: number; direction: number } | null {
@@ -167,15 +170,16 @@ export class VirtualBoard {
   }
 
   /** The count is latched at the very edge, between two ticks, as an interrupt would. */
-  private latchEdges(before: readonly number[], countsBefore: readonly number[]): void {
+  private latchEdges(truthBefore: readonly number[], countsBefore: readonly number[]): void {
     const truth = this.arm.truth();
     for (let i = 0; i < truth.length; i++) {
       const at = this.switchAt(i);
       if (!at || !this.watching[i]) continue;
-      const was = (before[i]! - at.position) * at.direction;
+      const was = (truthBefore[i]! - at.position) * at.direction;
       const is = (truth[i]! - at.position) * at.direction;
       if (was >= 0 || is < 0) continue;
-      this.edges[i] = countsBefore[i]! + (this.counts[i]! - countsBefore[i]!) * (-was / (is - was));
+      const share = -was / (is - was);
+      this.edges[i] = countsBefore[i]! + (this.axes.counts[i]! - countsBefore[i]!) * share;
       this.watching[i] = false;
     }
   }
@@ -187,9 +191,9 @@ export class VirtualBoard {
       bootId: this.bootId,
       energised: [...this.energised],
       gripperEnergised: this.gripperEnergised,
-      q: [...this.counts],
+      q: [...this.axes.counts],
       gripper: this.gripper,
-      moving: this.speeds.some((v) => Math.abs(v) > STILL),
+      moving: this.axes.moving,
       latched: this.latched,
       faults: [...this.faults],
       switches: truth.map((q, i) => {

@@ -2,9 +2,10 @@ import { cpSync } from 'node:fs';
 import { build } from 'esbuild';
 
 // The server as two entries: the web side and the arm process. Packages stay outside.
+const folder = process.argv[2] ?? 'dist';
 await build({
   entryPoints: { index: 'server/index.ts', 'arm-process': 'server/control/arm-process.ts' },
-  outdir: 'dist/server',
+  outdir: `${folder}/server`,
   bundle: true,
   platform: 'node',
   target: 'node20',
@@ -14,4 +15,4 @@ await build({
   sourcemap: true,
   logLevel: 'warning',
 });
-cpSync('drizzle', 'dist/drizzle', { recursive: true });
+cpSync('drizzle', `${folder}/drizzle`, { recursive: true });

@@ -1,3 +1,4 @@
+import type { Joint } from '../../shared/arm/model';
 import { POINT_SPEED_CREEP_M_S, POINT_SPEED_M_S } from '../../shared/arm/motion-rules';
 import { CEILINGS, trustCeiling, worstTrust } from '../../shared/arm/trust';
 import type { CeilingState } from '../../shared/live/server-messages';
@@ -41,4 +42,12 @@ export function capsFor(state: ControllerState, fraction: number): PathCaps {
 /** Worst reach where the configuration is not known, otherwise nothing: paths then look at the arm itself. */
 export function reachToUse(arm: Arm, state: ControllerState): Float64Array | undefined {
   return positionKnown(state) ? undefined : arm.reach;
+}
+
+/** While the arm's position is not known one press moves a joint at most this far: rad, m. */
+const UNKNOWN_TRAVEL_RAD = (10 * Math.PI) / 180;
+const UNKNOWN_TRAVEL_M = 0.02;
+
+export function unknownTravel(joint: Joint): number {
+  return joint.type === 'revolute' ? UNKNOWN_TRAVEL_RAD : UNKNOWN_TRAVEL_M;
 }

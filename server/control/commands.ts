@@ -3,13 +3,17 @@ import type { ClientMessage } from '../../shared/live/client-messages';
 import { ceilingState, positionKnown } from './ceiling';
 import { answer, handBack, handOver, mayAct, sessionEnded, socketClosed, take } from './control-right';
 import { acknowledge } from './faults';
-import { endHold, keepHold, mayMove, nudge, setGripper, startHold } from './holds';
+import { setGripper } from './gripper';
+import { endHold, keepHold, startHold } from './holds';
+import { mayMove } from './may-move';
 import { energise, motorsOff } from './motors';
 import { isMoving, letGo, replanMove } from './moves';
+import { nudge } from './nudge';
 import type { Actor, Resolved } from './process-messages';
-import { audit, type Refusal, refusal, tell } from './report';
+import { audit, type Refusal, refusal } from './report';
 import { endRun, pauseRun, resumeRun, startRun, stepRun } from './runner';
 import type { Arm, ControllerState, Incoming, Outputs } from './state';
+import { stop } from './stopping';
 import { declare, doubt } from './trust-keeping';
 
 /** Takes one message in and answers it. Nothing here throws for what a page may send. */
@@ -34,23 +38,6 @@ export function receive(arm: Arm, state: ControllerState, outputs: Outputs, inco
       state.unattended = incoming.unattended;
       return;
   }
-}
-
-/** Ramps down on the path, stays energised, drops the run. Anybody's, any time, whatever else is going on. */
-function stop(
-  arm: Arm,
-  state: ControllerState,
-  outputs: Outputs,
-  who: { userId: string; name: string },
-): void {
-  letGo(arm, state);
-  state.hold = null;
-  state.energising = [];
-  if (state.gripper) state.gripper.target = state.gripper.opening;
-  endRun(state, outputs, 'stopped', `${who.name} pressed Stop.`);
-  state.stop = { by: who.name, atMs: state.wallMs, atS: state.nowS, acknowledged: false };
-  tell(state, outputs, 'caution', 'stopped', `${who.name} stopped ${arm.model.name}. It stays energised.`);
-  audit(state, outputs, who, 'stop');
 }
 
 function handle(
@@ -134,7 +121,7 @@ function inControl(
           'positionUnknown',
           'The position is not known well enough. Declare or reference it first.',
         );
-      return startRun(state, outputs, actor, message, resolved.program);
+      return startRun(arm, state, outputs, actor, message, resolved.program);
     }
     case 'run.pause':
       if (!state.run) return refusal('noRun', 'There is no run to pause.');
@@ -164,15 +151,15 @@ function setCeiling(
 ): Refusal {
   if (peopleClear && fraction !== 1)
     return refusal('notFull', 'People clear goes with a ceiling of exactly 100 %.');
-  const before = ceilingState(state);
   const raises = fraction > state.personCeiling || (peopleClear && !state.peopleClear);
   if (raises && isMoving(state))
     return refusal('moving', 'While the arm moves the ceiling can only be lowered.');
+  const before = ceilingState(state);
   state.personCeiling = fraction;
   state.peopleClear = peopleClear;
   const after = ceilingState(state);
-  if (state.move && isMoving(state) && !state.move.ending && after.fraction < before.fraction)
-    replanMove(arm, state, state.move);
+  const lower = after.fraction < before.fraction || after.toolSpeed !== before.toolSpeed;
+  if (lower && state.move && isMoving(state) && !state.move.ending) replanMove(arm, state, state.move);
   if (after.fraction > CEILINGS.easy || peopleClear)
     audit(
       state,

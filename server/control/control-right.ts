@@ -1,19 +1,17 @@
 import { CEILINGS } from '../../shared/arm/trust';
+import { may } from '../../shared/team/roles';
+import { stillGripper } from './gripper';
+import { endHold } from './holds';
 import { isMoving, letGo } from './moves';
 import type { Actor } from './process-messages';
 import { audit, type Refusal, refusal, tell } from './report';
-import { endRun, pauseRun } from './runner';
+import { endRun, pauseRun, waitsForPerson } from './runner';
 import type { Arm, ControllerState, Holder, Outputs } from './state';
 
 /** Silence after which a request for control is granted, s. */
 const REQUEST_SILENCE_S = 10;
 /** How long a session whose socket was lost may still reclaim control, s. */
 const AWAY_S = 10;
-
-/** Whether this socket holds control. */
-export function holds(state: ControllerState, actor: Actor): boolean {
-  return state.control?.socketId === actor.socketId;
-}
 
 /** Null when `actor` may act in this turn. Every motion message passes here. */
 export function mayAct(state: ControllerState, actor: Actor, turn: number): Refusal {
@@ -33,20 +31,21 @@ export function take(
   force: boolean,
 ): Refusal {
   const { control } = state;
+  if (force && !may(actor.role, 'control.force'))
+    return refusal('notAllowed', 'Only the owner may take control by force.');
   if (!control) {
     grant(state, outputs, actor);
     return null;
   }
-  if (control.sessionId === actor.sessionId) return reclaim(state, outputs, actor, control);
+  if (control.sessionId === actor.sessionId) return reclaim(arm, state, outputs, actor, control);
   if (state.request && !force && state.request.holder.sessionId !== actor.sessionId)
     return refusal('alreadyAsked', `${state.request.holder.name} has already asked for control. Wait.`);
   if (force) {
     endRun(state, outputs, 'stopped', `${actor.name} took control by force.`);
-    state.hold = null;
-    letGo(arm, state);
+    comeToRest(arm, state);
   }
   const { userId, name, role, sessionId, socketId } = actor;
-  const wait = force || control.awaySinceS !== null ? 0 : REQUEST_SILENCE_S;
+  const wait = force ? 0 : REQUEST_SILENCE_S;
   state.request = {
     holder: { userId, name, role, sessionId, socketId },
     untilS: state.nowS + wait,
@@ -59,24 +58,36 @@ export function take(
 }
 
 /** The holder's own session comes back, or takes over from its other tab. */
-function reclaim(state: ControllerState, outputs: Outputs, actor: Actor, control: Holder): Refusal {
+function reclaim(arm: Arm, state: ControllerState, outputs: Outputs, actor: Actor, control: Holder): Refusal {
   if (control.socketId === actor.socketId) return null;
-  if (control.awaySinceS !== null) {
-    control.socketId = actor.socketId;
-    control.awaySinceS = null;
+  if (control.awaySinceS === null) {
+    if (isMoving(state) || state.hold)
+      return refusal('moving', 'The arm moves. Let go in your other tab first.');
+    grant(state, outputs, actor);
     return null;
   }
-  if (isMoving(state)) return refusal('moving', 'The arm moves. Let go in your other tab first.');
-  grant(state, outputs, actor);
+  control.socketId = actor.socketId;
+  control.awaySinceS = null;
+  // A reconnect begins slowly again; a run that went on meanwhile keeps its speed.
+  if (!state.run) resetCeiling(arm, state);
   return null;
+}
+
+function resetCeiling(arm: Arm, state: ControllerState): void {
+  letGo(arm, state);
+  state.personCeiling = CEILINGS.creep;
+  state.peopleClear = false;
 }
 
 function grant(state: ControllerState, outputs: Outputs, to: Omit<Holder, 'sinceMs' | 'awaySinceS'>): void {
   const { userId, name, role, sessionId, socketId } = to;
+  // A paused run waits for whoever started it, and for nobody else.
+  if (state.run && state.run.userId !== userId)
+    endRun(state, outputs, 'lost control', `Control went to ${name}.`);
   state.turn++;
   state.control = { userId, name, role, sessionId, socketId, sinceMs: state.wallMs, awaySinceS: null };
   state.request = null;
-  state.hold = null;
+  state.energising = [];
   state.personCeiling = CEILINGS.creep;
   state.peopleClear = false;
   tell(state, outputs, 'note', 'controlTaken', `${name} has control of this arm.`);
@@ -84,23 +95,25 @@ function grant(state: ControllerState, outputs: Outputs, to: Omit<Holder, 'since
 }
 
 export function answer(state: ControllerState, outputs: Outputs, actor: Actor, accept: boolean): Refusal {
-  if (!holds(state, actor)) return refusal('notInControl', 'Only whoever has control can answer.');
+  if (state.control?.socketId !== actor.socketId)
+    return refusal('notInControl', 'Only whoever has control can answer.');
   const { request } = state;
   if (!request) return refusal('nobodyAsks', 'Nobody asks for control.');
   if (accept) {
+    if (state.run && state.run.phase !== 'paused')
+      return refusal('running', 'Pause or end the run first, then say yes.');
     request.untilS = state.nowS;
     return null;
   }
+  if (request.forced) return refusal('forced', `${request.holder.name} takes control by force.`);
   state.request = null;
   tell(state, outputs, 'note', 'controlKept', `${actor.name} keeps control.`);
   return null;
 }
 
 export function handBack(state: ControllerState, outputs: Outputs, actor: Actor, turn: number): Refusal {
-  const no = mayAct(state, actor, turn);
+  const no = mayAct(state, actor, turn) ?? mayChangeHands(state);
   if (no) return no;
-  if (isMoving(state) || state.run)
-    return refusal('moving', 'Let the arm come to rest and end the run first.');
   giveUp(state, outputs, `${actor.name} handed control back.`);
   return null;
 }
@@ -115,9 +128,18 @@ export function handOver(
   const no = mayAct(state, actor, turn);
   if (no) return no;
   if (!to) return refusal('notWatching', 'That person is not looking at this arm now.');
-  if (isMoving(state)) return refusal('moving', 'Let the arm come to rest first.');
-  if (state.run) return refusal('running', 'End the run first: a run belongs to whoever started it.');
+  if (!may(to.role, 'arm.control'))
+    return refusal('notAllowed', `${to.name} may watch, but not take control.`);
+  const busy = mayChangeHands(state);
+  if (busy) return busy;
   grant(state, outputs, to);
+  return null;
+}
+
+/** Control changes hands only while the arm stands and nothing is under way. */
+function mayChangeHands(state: ControllerState): Refusal {
+  if (isMoving(state) || state.hold) return refusal('moving', 'Let the arm come to rest first.');
+  if (state.run) return refusal('running', 'End the run first: a run belongs to whoever started it.');
   return null;
 }
 
@@ -125,7 +147,7 @@ function giveUp(state: ControllerState, outputs: Outputs, message: string): void
   const before = state.control;
   state.control = null;
   state.request = null;
-  state.hold = null;
+  state.energising = [];
   state.turn++;
   state.personCeiling = CEILINGS.creep;
   state.peopleClear = false;
@@ -133,14 +155,20 @@ function giveUp(state: ControllerState, outputs: Outputs, message: string): void
   audit(state, outputs, before, 'control.handBack', message);
 }
 
-/** A hold dies at once with its socket; control waits AWAY_S for its session. */
+/** Whatever moves ramps down; what has not begun does not begin. */
+function comeToRest(arm: Arm, state: ControllerState): void {
+  endHold(arm, state, null);
+  letGo(arm, state);
+  stillGripper(state);
+  state.energising = [];
+}
+
+/** A hold dies at once with its socket, and no further joint is energised; control waits AWAY_S for its session. */
 export function socketClosed(arm: Arm, state: ControllerState, socketId: string): void {
   if (state.request?.holder.socketId === socketId) state.request = null;
   if (state.control?.socketId !== socketId) return;
-  if (state.hold) {
-    state.hold = null;
-    letGo(arm, state);
-  }
+  endHold(arm, state, null);
+  state.energising = [];
   state.control.awaySinceS ??= state.nowS;
 }
 
@@ -150,25 +178,26 @@ export function sessionEnded(arm: Arm, state: ControllerState, outputs: Outputs,
   if (state.control?.sessionId !== sessionId) return;
   const { name } = state.control;
   endRun(state, outputs, 'lost control', `${name} signed out.`);
-  letGo(arm, state);
+  comeToRest(arm, state);
   giveUp(state, outputs, `${name} signed out, so nobody has control.`);
 }
 
 /** Requests that come due, and holders that stay away. */
 export function tickControl(arm: Arm, state: ControllerState, outputs: Outputs): void {
   const { request, control } = state;
-  const still = !isMoving(state);
-  if (request && state.nowS >= request.untilS && still && (!state.run || state.run.phase === 'paused')) {
-    endRun(state, outputs, 'lost control', `Control went to ${request.holder.name}.`);
+  if (!control) return;
+  const still = !isMoving(state) && !state.hold;
+  const { run } = state;
+  if (request && state.nowS >= request.untilS && still && (!run || run.phase === 'paused')) {
     grant(state, outputs, request.holder);
     return;
   }
-  if (!control || control.awaySinceS === null || state.nowS - control.awaySinceS < AWAY_S) return;
-  if (state.run) {
-    if (state.unattended) return;
+  if (control.awaySinceS === null || state.nowS - control.awaySinceS < AWAY_S) return;
+  if (run) {
+    if (state.unattended && !waitsForPerson(run)) return;
     pauseRun(arm, state, `${control.name} has been away for ${AWAY_S} s.`);
-    if (!still) return;
-    endRun(state, outputs, 'lost control', `${control.name} stayed away.`);
   }
-  if (still) giveUp(state, outputs, `${control.name} is away, so nobody has control.`);
+  if (!still) return;
+  if (request) grant(state, outputs, request.holder);
+  else giveUp(state, outputs, `${control.name} is away, so nobody has control.`);
 }

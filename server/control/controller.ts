@@ -1,17 +1,18 @@
 import { receive } from './commands';
 import { tickControl } from './control-right';
-import { raiseFault, watchLink } from './faults';
-import { tickGripper, tickHold } from './holds';
+import { raiseFault } from './faults';
+import { tickGripper } from './gripper';
+import { tickHold } from './holds';
+import { watchLink } from './link-watch';
 import { tickEnergising } from './motors';
 import { advanceMove, isMoving } from './moves';
 import { tickReference } from './reference';
 import { tickRun } from './runner';
 import { type Controller, type Inputs, newOutputs, type Outputs } from './state';
-import { newWatch, noteSent, objection, type Watch } from './supervisor';
+import { tickStop } from './stopping';
+import { forgetSent, noteSent, objection, recount } from './supervisor';
 import { updateTorqueUsed } from './torque';
-import { setTrust, tellTrustLoss, tickServos } from './trust-keeping';
-
-const watches = new WeakMap<Controller, Watch>();
+import { loseTrust, tellTrustLoss, tickServos } from './trust-keeping';
 
 /**
  * One tick of an arm: takes in what arrived, moves everything `dt` further, and says what goes out. No clock,
@@ -26,7 +27,8 @@ export function step(controller: Controller, inputs: Inputs, dt: number): Output
   state.nowS = inputs.nowS;
   state.wallMs = inputs.wallMs;
   watchLink(arm, state, outputs, inputs);
-  const wasEnding = state.move?.ending ?? false;
+  const { move } = state;
+  const plan = move?.profile;
   for (const incoming of inputs.incoming) receive(arm, state, outputs, incoming);
   tickHold(arm, state);
   tickControl(arm, state, outputs);
@@ -38,56 +40,69 @@ export function step(controller: Controller, inputs: Inputs, dt: number): Output
   advanceMove(state, dt);
   updateTorqueUsed(arm, state);
   suspectStalls(controller, outputs);
-  send(controller, outputs, inputs, dt, !wasEnding && (state.move?.ending ?? false));
+  tickStop(arm, state, outputs, inputs.lead);
+  send(controller, outputs, inputs, dt, move !== null && move === state.move && plan !== move.profile);
   return outputs;
 }
 
 /** Hands the set-point out unless the supervisor objects; then nothing is sent and the board stops by itself. */
-function send(controller: Controller, outputs: Outputs, inputs: Inputs, dt: number, ramp: boolean): void {
-  const { arm, state } = controller;
-  const watch = watches.get(controller) ?? newWatch();
-  watches.set(controller, watch);
-  // Where a person or the board has said anew where the joints are, the past says nothing about speed.
-  if (outputs.orders.some((order) => order.kind !== 'watchSwitch')) watch.sent.length = 0;
-  if (state.link !== 'steady' || !state.energised.some(Boolean) || state.fault?.code === 'supervisor') return;
-  const wrong = objection(arm, state, watch, state.q, dt);
-  if (wrong !== null) {
-    outputs.linkStop = true;
-    const last = watch.sent.at(-1);
-    if (last) state.q = [...last];
-    state.move = null;
-    watch.sent.length = 0;
-    raiseFault(arm, state, outputs, {
-      code: 'supervisor',
-      hard: true,
-      message: `${arm.model.name} was stopped before a set-point that breaks a rule: ${wrong}. It stands. Note what you did; a builder acknowledges.`,
-    });
-    return;
-  }
-  noteSent(watch, state.q);
-  outputs.setpoint = {
-    t: inputs.nowS + inputs.lead,
-    q: [...state.q],
-    gripper: state.gripperEnergised ? (state.gripper?.opening ?? null) : null,
-  };
-  outputs.replace = ramp;
+function send(
+  controller: Controller,
+  outputs: Outputs,
+  inputs: Inputs,
+  dt: number,
+  replanned: boolean,
+): void {
+  const { arm, state, watch } = controller;
+  // Nothing is told to a board that is not there, holds nothing, or has stopped by itself until it is cleared.
+  if (
+    state.link !== 'steady' ||
+    !state.energised.some(Boolean) ||
+    state.sample?.latched ||
+    outputs.linkStop ||
+    state.fault?.code === 'supervisor'
+  )
+    return forgetSent(watch);
+  const gripper = state.gripperEnergised ? (state.gripper?.opening ?? null) : null;
+  recount(watch, state, outputs.orders);
+  const wrong = objection(arm, state, watch, gripper, dt);
+  if (wrong !== null) return overrule(controller, outputs, wrong);
+  noteSent(watch, state.q, gripper);
+  outputs.setpoint = { t: inputs.nowS + inputs.lead, q: [...state.q], gripper };
+  outputs.replace = replanned;
+}
+
+function overrule({ arm, state, watch }: Controller, outputs: Outputs, wrong: string): void {
+  outputs.linkStop = true;
+  const last = watch.sent.at(-1);
+  if (last) state.q = [...last];
+  state.move = null;
+  state.qd.fill(0);
+  state.qdd.fill(0);
+  forgetSent(watch);
+  raiseFault(arm, state, outputs, {
+    code: 'supervisor',
+    hard: true,
+    message: `${arm.model.name} was stopped before a set-point that breaks a rule: ${wrong}. It stands. Note what you did; a builder acknowledges.`,
+  });
 }
 
 /** A stepper asked for more torque than it has at this speed may have lost steps: nobody can see it, so it is said. */
-function suspectStalls(controller: Controller, outputs: Outputs): void {
-  const { arm, state } = controller;
+function suspectStalls({ arm, state }: Controller, outputs: Outputs): void {
   for (const [i, joint] of arm.model.joints.entries()) {
     const used = state.torqueUsed[i];
     if (used === null || used === undefined || used <= 1 || joint.drive.kind !== 'stepper') continue;
-    if (state.trust[i] !== 'declared' && state.trust[i] !== 'referenced') continue;
+    const believed = state.referencing?.joint === i ? state.referencing.before : state.trust[i];
+    if (believed !== 'declared' && believed !== 'referenced') continue;
     const why = `${joint.name} was asked for more torque than its motor has.`;
-    setTrust(state, [i], 'doubtful', why);
+    const moved = isMoving(state);
+    loseTrust(arm, state, [i], why);
     tellTrustLoss(state, outputs, joint.name, why);
-    if (isMoving(state))
+    if (moved)
       raiseFault(arm, state, outputs, {
         code: 'noTorqueLeft',
         hard: false,
-        message: `${why} ${arm.model.name} lets go and stands; it may have lost steps. Look at it, acknowledge, then declare or reference.`,
+        message: `${why} ${arm.model.name} ramps down; it may have lost steps. Look at it, acknowledge, then declare or reference.`,
       });
   }
 }

@@ -1,26 +1,14 @@
 import type { ClientMessage } from '../../shared/live/client-messages';
-import type { MotorsState } from '../../shared/live/server-messages';
 import { isMoving } from './moves';
 import type { Actor } from './process-messages';
 import { audit, type Refusal, refusal } from './report';
 import { endRun } from './runner';
 import type { Arm, ControllerState, Outputs } from './state';
 import { dropsNow } from './torque';
-import { trustAfterMotorsOff } from './trust-keeping';
+import { setTrust, settleServo, trustAfterMotorsOff } from './trust-keeping';
 
 /** Joints are energised one after another, so that the supply does not sag and a jump is seen. s */
 const BETWEEN_JOINTS_S = 0.25;
-
-export function motorsState(state: ControllerState): MotorsState {
-  if (isMoving(state)) return state.move?.ending ? 'stopping' : 'moving';
-  if (state.fault) return 'faulted';
-  if (state.energising.length > 0) return 'energising';
-  return state.energised.some(Boolean) ? 'standing' : 'resting';
-}
-
-export function allEnergised(state: ControllerState): boolean {
-  return state.energised.every(Boolean) && state.energising.length === 0;
-}
 
 export function energise(
   arm: Arm,
@@ -34,7 +22,9 @@ export function energise(
   if (state.fault) return refusal('faulted', 'A fault waits to be acknowledged first.');
   if (isMoving(state)) return refusal('moving', 'Let the arm come to rest first.');
   const { joints } = arm.model;
-  const chosen = (message.joints ?? joints.map((_, i) => i)).filter((i) => !state.energised[i]);
+  if (state.run) return refusal('running', 'End the run first.');
+  const asked = message.joints ? [...new Set(message.joints)] : joints.map((_, i) => i);
+  const chosen = asked.filter((i) => !state.energised[i]);
   const queue: ControllerState['energising'] = [];
   for (const i of chosen) {
     const joint = joints[i];
@@ -71,11 +61,14 @@ export function tickEnergising(arm: Arm, state: ControllerState, outputs: Output
   state.energised[index] = true;
   state.q[index] = assumed;
   outputs.orders.push({ kind: 'energise', joint: index, assumed });
-  const { drive, hardRange } = arm.model.joints[index]!;
-  if (drive.kind !== 'servo') return;
-  state.trust[index] = 'declared';
-  const range = hardRange.upper - hardRange.lower;
-  state.servoSettledS[index] = state.nowS + (range * drive.ratio) / drive.noLoadSpeed;
+  if (arm.model.joints[index]!.drive.kind !== 'servo') return;
+  setTrust(
+    state,
+    [index],
+    'declared',
+    `${arm.model.joints[index]!.name} was energised where it was said to stand.`,
+  );
+  settleServo(arm, state, index);
 }
 
 /** Motors off may drop the arm: the person has to have seen which joints. */
@@ -86,6 +79,11 @@ export function motorsOff(
   actor: Actor,
   accepted: readonly number[],
 ): Refusal {
+  if (state.link !== 'steady')
+    return refusal(
+      'noLink',
+      'The link is not steady, so the motors cannot be switched off here. Use the supply switch.',
+    );
   if (isMoving(state)) return refusal('moving', 'Stop the arm first, then switch the motors off.');
   const drops = dropsNow(arm, state);
   const unseen = drops.filter((i) => !accepted.includes(i)).map((i) => arm.model.joints[i]!.name);

@@ -20,19 +20,17 @@ export function startMove(
   arm: Arm,
   state: ControllerState,
   to: readonly number[],
-  fraction: number,
-  target: number[] | null,
+  act: Pick<Move, 'by' | 'fraction' | 'target'>,
 ): void {
   const path = jointPath(arm.chain, state.q, to, reachToUse(arm, state));
   const s = { position: 0, velocity: 0, acceleration: 0 };
   const move: Move = {
+    ...act,
     path,
-    fraction,
     profile: { duration: 0, phases: [], end: s },
     t: 0,
     s,
     ending: false,
-    target,
   };
   move.profile = planPosition(s, path.length, limitsOf(arm, state, move));
   state.move = move;
@@ -53,6 +51,11 @@ export function letGo(arm: Arm, state: ControllerState): void {
   if (!move || move.ending) return;
   move.ending = true;
   replanMove(arm, state, move);
+}
+
+/** Whether the move got to the end of its path and was not let go before. */
+export function hasArrived(state: ControllerState): boolean {
+  return state.move !== null && !state.move.ending && !isMoving(state);
 }
 
 export function isMoving(state: ControllerState): boolean {

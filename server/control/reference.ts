@@ -1,4 +1,5 @@
-import { CEILINGS } from '../../shared/arm/trust';
+import type { Joint } from '../../shared/arm/model';
+import { CEILINGS, type Trust } from '../../shared/arm/trust';
 import { isMoving, letGo, startMove } from './moves';
 import { audit, type Refusal, refusal, tell } from './report';
 import type { Arm, ControllerState, Outputs } from './state';
@@ -18,8 +19,11 @@ export function beginReference(arm: Arm, state: ControllerState, outputs: Output
   const { direction } = joint.drive.reference;
   const to = [...state.q];
   to[index] = state.q[index]! + direction * (joint.hardRange.upper - joint.hardRange.lower) * SEARCH_MARGIN;
-  startMove(arm, state, to, CEILINGS.creep, null);
-  state.referencing = { joint: index, armed: false };
+  const before = state.trust[index]!;
+  // Its soft limits say nothing about where the switch will be found: for the search the joint is not known.
+  setTrust(state, [index], 'doubtful', `${joint.name} looks for its switch.`);
+  startMove(arm, state, to, { by: 'hold', fraction: CEILINGS.creep, target: null });
+  state.referencing = { joint: index, armed: false, before };
   outputs.orders.push({ kind: 'watchSwitch', joint: index });
   return null;
 }
@@ -51,15 +55,30 @@ export function tickReference(arm: Arm, state: ControllerState, outputs: Outputs
     tell(state, outputs, 'note', 'referenced', `${joint.name} found its switch: its position is referenced.`);
     audit(state, outputs, state.control, 'reference', joint.name);
   } else if (!isMoving(state)) {
-    // Let go before the switch, or the whole range searched without finding it.
-    if (state.hold)
-      tell(
-        state,
-        outputs,
-        'caution',
-        'switchNotFound',
-        `${joint.name} went its whole range and its switch did not close. Its position stays as it was. Check the switch and its wire.`,
-      );
     state.referencing = null;
+    if (state.hold) notFound(arm, state, outputs, index);
+    // Let go before the switch: nothing was lost, but beyond its soft limits nothing is claimed either.
+    else if (insideLimits(joint, state.q[index]!)) {
+      setTrust(state, [index], referencing.before, `${joint.name} was let go before its switch.`);
+      if (believed(referencing.before))
+        outputs.orders.push({ kind: 'declare', joint: index, q: state.q[index]! });
+    }
   }
+}
+
+/** The whole range was searched: a broken switch, or a joint that does not move. */
+function notFound(arm: Arm, state: ControllerState, outputs: Outputs, index: number): void {
+  const { name } = arm.model.joints[index]!;
+  const message = `${name} went its whole range and its switch did not close, so its position is unknown. Check the switch and its wire.`;
+  state.hold = null;
+  setTrust(state, [index], 'unknown', message);
+  tell(state, outputs, 'caution', 'switchNotFound', message);
+}
+
+function believed(trust: Trust): boolean {
+  return trust === 'declared' || trust === 'referenced';
+}
+
+function insideLimits(joint: Joint, q: number): boolean {
+  return q >= joint.limits.lower && q <= joint.limits.upper;
 }

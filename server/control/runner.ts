@@ -1,6 +1,8 @@
 import { CEILINGS, worstTrust } from '../../shared/arm/trust';
 import type { ClientMessage } from '../../shared/live/client-messages';
 import type { Program, ProgramStep } from '../../shared/sequence/program';
+import { positionKnown } from './ceiling';
+import { mayReach } from './may-move';
 import { isMoving, letGo, replanMove, startMove } from './moves';
 import type { Actor, ArmRecord } from './process-messages';
 import { audit, type Refusal, refusal, tell } from './report';
@@ -17,6 +19,7 @@ type RunEnding = Extract<ArmRecord, { kind: 'runEnded' }>['how'];
 
 /** Starts a run. An unproven program has its first cycle held; otherwise it begins after a countdown. */
 export function startRun(
+  arm: Arm,
   state: ControllerState,
   outputs: Outputs,
   actor: Actor,
@@ -25,12 +28,17 @@ export function startRun(
 ): Refusal {
   if (!program || program.steps.length === 0)
     return refusal('nothingToRun', 'This sequence has nothing to run.');
+  for (const step of program.steps) {
+    const no = step.kind === 'goTo' ? mayReach(arm, step.q) : null;
+    if (no) return refusal(no.code, `Step ${step.path}: ${no.message}`);
+  }
   if (state.run) return refusal('running', 'A run is under way. End it first.');
   const from = message.fromStep ? program.steps.findIndex((s) => s.stepId === message.fromStep) : 0;
   if (from < 0) return refusal('noSuchStep', 'That step does nothing by itself. Choose another one.');
   const held = !program.proven;
   state.run = {
     program,
+    userId: actor.userId,
     phase: held ? 'heldWaiting' : 'countdown',
     held,
     single: message.single ?? false,
@@ -94,9 +102,16 @@ export function pauseRun(arm: Arm, state: ControllerState, reason: string | null
   run.phase = isMoving(state) ? 'pausing' : 'paused';
 }
 
+/** Whether the run stands until somebody does something. */
+export function waitsForPerson(run: Run): boolean {
+  return run.phase === 'paused' || run.phase === 'heldWaiting' || run.phase === 'stepWaiting';
+}
+
 export function resumeRun(state: ControllerState, outputs: Outputs, actor: Actor): Refusal {
   const { run } = state;
   if (!run) return refusal('noRun', 'There is no run to resume.');
+  if (run.userId !== actor.userId)
+    return refusal('notYours', 'Somebody else started this run. End it and start your own.');
   if (run.phase !== 'paused') return refusal('notPaused', 'The run is not paused.');
   if (run.held) {
     run.phase = 'heldWaiting';
@@ -158,6 +173,12 @@ function stepFraction(run: Run, step: ProgramStep): number {
 export function tickRun(arm: Arm, state: ControllerState, outputs: Outputs, dt: number): void {
   const { run } = state;
   if (!run) return;
+  if (!positionKnown(state)) {
+    letGo(arm, state);
+    endRun(state, outputs, 'stopped', 'The position is not known well enough any more.');
+    return;
+  }
+  if (run.phase === 'heldRunning' && state.hold?.motion.kind !== 'run') letGoOfRun(arm, state);
   if (run.phase === 'pausing' && !isMoving(state)) run.phase = 'paused';
   if (run.phase === 'countdown') {
     run.countdownS = Math.max(0, run.countdownS - dt);
@@ -174,7 +195,7 @@ export function tickRun(arm: Arm, state: ControllerState, outputs: Outputs, dt: 
 function beginStep(arm: Arm, state: ControllerState, run: Run): void {
   const step = run.program.steps[run.stepIndex]!;
   if (step.kind === 'goTo') {
-    startMove(arm, state, step.q, stepFraction(run, step), step.q);
+    startMove(arm, state, step.q, { by: 'run', fraction: stepFraction(run, step), target: step.q });
     run.activity = { kind: 'move' };
   } else if (step.kind === 'grip') {
     if (state.gripper) state.gripper.target = step.opening;

@@ -1,7 +1,7 @@
 import { forwardKinematics, type Transform } from '../../shared/kinematics';
 import type { RunState, StateMessage, TelemetryMessage } from '../../shared/live/server-messages';
 import { ceilingState } from './ceiling';
-import { motorsState } from './motors';
+import { motorsState } from './motors-state';
 import { isMoving, stopAt } from './moves';
 import type { Arm, ControllerState, Run } from './state';
 import { dropsNow } from './torque';

@@ -39,6 +39,8 @@ export interface ControlRequest {
 /** One motion: a straight joint path and the law of time on it. */
 export interface Move {
   path: JointPath;
+  /** What keeps it going: with its hold or run gone it has to be on its ramp to rest. */
+  by: 'hold' | 'nudge' | 'run';
   /** Share of each joint's speed limit that the act itself asks for; the ceiling comes on top. */
   fraction: number;
   profile: Profile;
@@ -59,6 +61,8 @@ export interface Hold {
   motion: HoldMotion;
   lastSeq: number;
   lastKeepS: number;
+  /** Where the joints stood when the button was pressed. */
+  from: number[];
 }
 
 /** What the present step of a run is waiting for, beyond a move. */
@@ -70,6 +74,8 @@ export type StepActivity =
 
 export interface Run {
   program: Program;
+  /** Who started it: nobody else may resume it. */
+  userId: string;
   phase: (typeof RUN_PHASES)[number];
   held: boolean;
   single: boolean;
@@ -94,6 +100,12 @@ export interface ControllerState {
   answerMs: number | null;
   bootId: number | null;
   sample: BoardSample | null;
+  /** Arm time at which the board's clock was last seen to move on. */
+  heardS: number;
+  /** Since when the board has not been where, or as, it was told to be; null while it is. */
+  astraySinceS: number | null;
+  /** After a fault was cleared the board gets until then to say so. */
+  clearingUntilS: number;
   energised: boolean[];
   gripperEnergised: boolean;
   /** Joints still to be energised, in order, with the servo angles that go with them. */
@@ -113,7 +125,7 @@ export interface ControllerState {
   request: ControlRequest | null;
   unattended: boolean;
   fault: FaultState | null;
-  stop: { by: string; atMs: number; atS: number; acknowledged: boolean } | null;
+  stop: StopAct | null;
   hold: Hold | null;
   move: Move | null;
   run: Run | null;
@@ -124,7 +136,34 @@ export interface ControllerState {
   gripper: { opening: number; target: number } | null;
   torqueUsed: (number | null)[];
   blocked: { joint: number; reason: string } | null;
-  referencing: { joint: number; armed: boolean } | null;
+  referencing: Referencing | null;
+}
+
+export interface StopAct {
+  by: string;
+  atMs: number;
+  /** Board time of the newest sample when Stop was pressed: a later one shows that the board has heard since. */
+  boardT: number;
+  acknowledged: boolean;
+  /** By then the board has to show the arm standing; null once it has. */
+  restByS: number | null;
+}
+
+export interface Referencing {
+  joint: number;
+  /** The latch of an earlier search is gone: what it shows now is ours. */
+  armed: boolean;
+  /** What the joint's trust was before it went looking. */
+  before: Trust;
+}
+
+/** The last set-points that went out: the supervisor judges by them and not by the generator's own figures. */
+export interface Watch {
+  /** Newest last; at most three. */
+  sent: number[][];
+  gripper: number | null;
+  /** Ticks in a row in which something moved undiminished though it should have been on its way to rest. */
+  strikes: number;
 }
 
 /** What a step hands to the outside. */
@@ -158,9 +197,11 @@ export interface Inputs {
   lead: number;
 }
 
+/** Plain data, changed in place by `step` and by nothing else. */
 export interface Controller {
   arm: Arm;
   state: ControllerState;
+  watch: Watch;
 }
 
 export interface ControllerOptions {
@@ -179,6 +220,7 @@ export function createController(model: ArmModel, options: ControllerOptions): C
   const seen = options.lastSeen?.length === n ? [...options.lastSeen] : startPosition(model);
   return {
     arm: { model, chain, reach: worstReach(chain) },
+    watch: { sent: [], gripper: null, strikes: 0 },
     state: {
       nowS: options.nowS,
       wallMs: options.wallMs,
@@ -187,6 +229,9 @@ export function createController(model: ArmModel, options: ControllerOptions): C
       answerMs: null,
       bootId: null,
       sample: null,
+      heardS: options.nowS,
+      astraySinceS: null,
+      clearingUntilS: options.nowS,
       energised: new Array<boolean>(n).fill(false),
       gripperEnergised: false,
       energising: [],

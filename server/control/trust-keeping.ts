@@ -1,6 +1,6 @@
-import { type Trust, worstTrust } from '../../shared/arm/trust';
+import type { Trust } from '../../shared/arm/trust';
 import { shownValue } from '../../shared/arm/units';
-import { isMoving } from './moves';
+import { isMoving, letGo } from './moves';
 import type { Actor } from './process-messages';
 import { audit, type Refusal, refusal, tell } from './report';
 import type { Arm, ControllerState, Outputs } from './state';
@@ -54,7 +54,7 @@ export function declare(
   return null;
 }
 
-/** Somebody pushed the arm, or suspects it: what was believed becomes doubtful. */
+/** Somebody pushed the arm, or suspects it: what was believed becomes doubtful, and what goes on ends. */
 export function doubt(
   arm: Arm,
   state: ControllerState,
@@ -63,20 +63,51 @@ export function doubt(
   joints: readonly number[],
   reason: string,
 ): Refusal {
-  const known = joints.filter((i) => i < arm.chain.n && state.trust[i] !== 'unknown');
-  setTrust(state, known, 'doubtful', `${actor.name}: ${reason}`);
-  audit(state, outputs, actor, 'trust.doubt', reason);
+  if (joints.length === 0) return null;
+  const names = joints.flatMap((i) => arm.model.joints[i]?.name ?? []);
+  if (names.length < joints.length)
+    return refusal('noSuchJoint', `${arm.model.name} has ${arm.chain.n} joints only.`);
+  loseTrust(arm, state, joints, `${actor.name}: ${reason}`);
+  tellTrustLoss(state, outputs, names.join(' and '), `${actor.name} says: ${reason}.`);
+  audit(state, outputs, actor, 'trust.doubt', `${names.join(', ')}: ${reason}`);
   return null;
+}
+
+/**
+ * What was believed of some joints is doubtful now; what moves ramps down, because it was planned for a
+ * position that was known. An energised servo finds back by itself: it drives to where it is told to be.
+ */
+export function loseTrust(arm: Arm, state: ControllerState, joints: readonly number[], why: string): void {
+  setTrust(
+    state,
+    joints.filter((i) => state.trust[i] !== 'unknown'),
+    'doubtful',
+    why,
+  );
+  letGo(arm, state);
+  state.hold = null;
+  if (state.referencing && joints.includes(state.referencing.joint)) state.referencing.before = 'doubtful';
+  for (const i of joints) if (state.energised[i]) settleServo(arm, state, i);
+}
+
+/** Starts the time after which a servo must have got to where it was told to be: its whole travel. */
+export function settleServo(arm: Arm, state: ControllerState, index: number): void {
+  const { drive, hardRange } = arm.model.joints[index]!;
+  if (drive.kind !== 'servo') return;
+  state.servoSettledS[index] =
+    state.nowS + ((hardRange.upper - hardRange.lower) * drive.ratio) / drive.noLoadSpeed;
 }
 
 /** A servo has no count to lose: once it has stood for its full travel time it is where it was told to be. */
 export function tickServos(arm: Arm, state: ControllerState): void {
   for (let i = 0; i < arm.chain.n; i++) {
     const settled = state.servoSettledS[i];
-    if (settled === null || settled === undefined || state.nowS < settled) continue;
-    state.servoSettledS[i] = null;
-    state.trust[i] = 'referenced';
-    state.trustSinceMs = state.wallMs;
+    if (settled === null || settled === undefined) continue;
+    if (isMoving(state) && state.move!.path.direction[i] !== 0) settleServo(arm, state, i);
+    else if (state.nowS >= settled) {
+      state.servoSettledS[i] = null;
+      setTrust(state, [i], 'referenced', `${arm.model.joints[i]!.name} has settled.`);
+    }
   }
 }
 
@@ -99,8 +130,4 @@ export function tellTrustLoss(state: ControllerState, outputs: Outputs, joint: s
     'trustLost',
     `${why} The position of ${joint} is doubtful: creep, holds and nudges only. Look at the arm, then declare or reference.`,
   );
-}
-
-export function armTrust(state: ControllerState): Trust {
-  return worstTrust(state.trust);
 }

@@ -1,10 +1,11 @@
+import type { DriveTruth } from '../../firmware-sim/drive-truth';
 import { VirtualBoard } from '../../firmware-sim/virtual-board';
 import { seededRandom } from '../../shared/kinematics';
 import type { ArmLink, ArmLinkOptions, BoardOrder, BoardSample, Setpoint } from '../control/arm-link';
 
 export interface BuiltInOptions extends ArmLinkOptions {
-  /** How strong each motor really is, 1 = as modelled. */
-  strength?: readonly number[];
+  /** Per joint, how the simulated arm differs from its model. */
+  truths?: readonly DriveTruth[];
   /** Length of a control tick: the one set-point that is buffered, s. */
   tickS: number;
 }
@@ -17,8 +18,8 @@ export class BuiltInLink implements ArmLink {
   private readonly listeners = new Set<(reason: string) => void>();
 
   constructor(private readonly options: BuiltInOptions) {
-    const { model, seed, strength } = options;
-    this.board = new VirtualBoard({ model, random: seededRandom(seed), strength });
+    const { model, seed, truths } = options;
+    this.board = new VirtualBoard({ model, random: seededRandom(seed), truths });
     this.sample = this.board.sample();
   }
 

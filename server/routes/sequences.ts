@@ -11,7 +11,7 @@ import {
 import type { Context } from '../context';
 import type { StoredArm } from '../db/arm-store';
 import type { StoredVersion } from '../db/sequence-store';
-import { approvalOf, prepare, rehearsePrepared } from '../sequences/programs';
+import { approvalOf, prepare, rehearsePatiently } from '../sequences/programs';
 import { armParams } from './arms';
 import { HttpProblem } from './problem';
 import { defineRoute, type Route } from './route';
@@ -165,11 +165,13 @@ export const sequenceRoutes: Route[] = [
     params: sequenceParams,
     body: z.strictObject({ version: z.int().positive() }),
     response: Sequence,
-    handle({ context, params, body, you, address }) {
+    async handle({ context, params, body, you, address }) {
       const arm = context.arms.get(params.armId);
       const version = context.sequences.get(arm.id, params.sequenceId, body.version);
+      // Should a pose be re-taught while this is computed, the fingerprint is the old one, and does not hold.
       const prepared = prepare(context.poses, arm, version);
-      const blocking = rehearsePrepared(arm, prepared, 1).problems.find((p) => p.severity === 'blocks');
+      const { problems } = await rehearsePatiently(arm, prepared, 1);
+      const blocking = problems.find((p) => p.severity === 'blocks');
       if (blocking)
         throw new HttpProblem(409, 'doesNotRehearse', `Step ${blocking.path || '–'}: ${blocking.message}`);
       context.sequences.approve(
@@ -226,7 +228,7 @@ export const sequenceRoutes: Route[] = [
     handle({ context, params, body }) {
       const arm = context.arms.get(params.armId);
       const version = context.sequences.get(arm.id, params.sequenceId, body.version);
-      return rehearsePrepared(arm, prepare(context.poses, arm, version), body.ceiling ?? 1);
+      return rehearsePatiently(arm, prepare(context.poses, arm, version), body.ceiling ?? 1);
     },
   }),
 ];

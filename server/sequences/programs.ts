@@ -1,8 +1,9 @@
+import { setImmediate as nextTurn } from 'node:timers/promises';
 import type { Approval, Rehearsal, RehearsalProblem } from '../../shared/api/resources';
 import { expandSequence } from '../../shared/sequence/expand';
 import { fingerprint } from '../../shared/sequence/fingerprint';
 import type { ProgramStep } from '../../shared/sequence/program';
-import { rehearse } from '../../shared/sequence/rehearse';
+import { rehearse, rehearseInTurns } from '../../shared/sequence/rehearse';
 import type { StoredArm } from '../db/arm-store';
 import type { PoseStore } from '../db/pose-store';
 import type { StoredVersion } from '../db/sequence-store';
@@ -21,6 +22,26 @@ export function prepare(poses: PoseStore, arm: StoredArm, version: StoredVersion
     model: arm.model,
   });
   return { steps, problems, fingerprint: fingerprint(steps, arm.model) };
+}
+
+/** A long cycle takes seconds to compute; a Stop that comes in meanwhile must not wait longer than this, ms. */
+const TURN_MS = 10;
+
+/** As `rehearsePrepared`, in turns with everything else that this process has to do. */
+export async function rehearsePatiently(
+  arm: StoredArm,
+  prepared: Prepared,
+  ceiling: number,
+): Promise<Rehearsal> {
+  let turnBegan = performance.now();
+  const breathe = () => {
+    if (performance.now() - turnBegan < TURN_MS) return undefined;
+    return nextTurn().then(() => {
+      turnBegan = performance.now();
+    });
+  };
+  const rehearsal = await rehearseInTurns({ model: arm.model, steps: prepared.steps, ceiling }, breathe);
+  return { ...rehearsal, problems: [...prepared.problems, ...rehearsal.problems] };
 }
 
 /** Expansion and physics together; what expansion cannot make sense of is not rehearsed. */

@@ -14,6 +14,8 @@ const id = z.string().min(1).max(64);
 const joint = z.int().min(0).max(7);
 /** The number of the current turn at the controls; a motion message from an earlier turn is refused. */
 const turn = z.int().nonnegative();
+/** The newest telemetry time the page has seen, s: an order that was long under way moves nothing. */
+const seenT = finite.optional();
 const jointVector = z.array(finite).min(1).max(8);
 export const TOOL_AXES = ['x', 'y', 'z', 'rx', 'ry', 'rz'] as const;
 
@@ -63,7 +65,7 @@ export const ClientMessage = z.discriminatedUnion('type', [
   message('trust.declare', { turn, q: jointVector, joints: z.array(joint).max(8).optional() }),
   /** Makes joints doubtful: somebody pushed the arm by hand. */
   message('trust.doubt', { joints: z.array(joint).max(8), reason: z.string().max(200).optional() }),
-  message('hold.start', { turn, holdId: id, motion: HoldMotion }),
+  message('hold.start', { turn, holdId: id, motion: HoldMotion, seenT }),
   z.strictObject({
     type: z.literal('hold.keep'),
     holdId: id,
@@ -78,6 +80,7 @@ export const ClientMessage = z.discriminatedUnion('type', [
     axis: z.union([joint, z.enum(TOOL_AXES)]),
     /** rad or m, signed; one of the nudge sizes. */
     amount: finite,
+    seenT,
   }),
   message('gripper.set', { turn, opening: z.number().min(0).max(1) }),
   message('run.start', {

@@ -37,6 +37,20 @@ export function rehearse(input: RehearsalInput): Rehearsal {
   return walk.result();
 }
 
+/** The same, a step at a time: `breathe` may return a promise to wait for before the next step. */
+export async function rehearseInTurns(
+  input: RehearsalInput,
+  breathe: () => Promise<void> | undefined,
+): Promise<Rehearsal> {
+  const walk = new Walk(input);
+  for (const step of input.steps) {
+    walk.step(step);
+    const pause = breathe();
+    if (pause) await pause;
+  }
+  return walk.result();
+}
+
 class Walk {
   private readonly chain: Chain;
   private readonly tau: Float64Array;

@@ -26,8 +26,10 @@ export function useHoldButton(options: {
   onNudge: (() => void) | null;
   /** True: a press is a nudge, not a hold. */
   nudging: boolean;
+  /** Says whether a key event anywhere on the page is this button's letter; holding that key is a hold. */
+  isLetter?: (event: globalThis.KeyboardEvent) => boolean;
 }) {
-  const { key, motion, disabled, onNudge, nudging } = options;
+  const { key, motion, disabled, onNudge, nudging, isLetter } = options;
   const held = useActiveHold() === key;
   const element = useRef<HTMLButtonElement>(null);
   const pointer = useRef<number | null>(null);
@@ -73,6 +75,38 @@ export function useHoldButton(options: {
     pressed.current = false;
     if (activeHoldKey() === key) endHold(why);
   };
+
+  // The letter key. What is down is remembered outside the effects: they are renewed whenever the page draws
+  // anew, and letting go must be heard all the same.
+  const letterDown = useRef<string | null>(null);
+  useEffect(() => {
+    if (!isLetter) return;
+    const onDown = (event: globalThis.KeyboardEvent) => {
+      if (event.repeat || letterDown.current !== null || !isLetter(event) || !start()) return;
+      letterDown.current = event.code;
+      pressed.current = true;
+    };
+    window.addEventListener('keydown', onDown);
+    return () => window.removeEventListener('keydown', onDown);
+  }, [isLetter, start]);
+  useEffect(() => {
+    const onUp = (event: globalThis.KeyboardEvent) => {
+      if (letterDown.current === null || event.code !== letterDown.current) return;
+      letterDown.current = null;
+      pressed.current = false;
+      if (activeHoldKey() === key) endHold('released');
+    };
+    // A key that comes up elsewhere is not heard here.
+    const onBlur = () => {
+      letterDown.current = null;
+    };
+    window.addEventListener('keyup', onUp, true);
+    window.addEventListener('blur', onBlur);
+    return () => {
+      window.removeEventListener('keyup', onUp, true);
+      window.removeEventListener('blur', onBlur);
+    };
+  }, [key]);
 
   return {
     held,

@@ -14,7 +14,7 @@ export function Component() {
   const { armId = '' } = useParams();
   const arm = useArm(armId);
   if (arm.isPending) return <p className="paper">Opening the arm…</p>;
-  if (arm.isError)
+  if (!arm.data)
     return (
       <main className="paper">
         <Message kind="fault">{errorText(arm.error)}</Message>

@@ -10,21 +10,24 @@ export function Component() {
   const { sequenceId = '' } = useParams();
   const [search] = useSearchParams();
   const version = Number(search.get('version')) || undefined;
-  const sequence = useSequence(arm.id, sequenceId, version);
-  if (sequence.isPending)
+  const newest = useSequence(arm.id, sequenceId);
+  const old = useSequence(arm.id, sequenceId, version);
+  const error = newest.error ?? old.error;
+  if (error)
+    return (
+      <main className="sheet">
+        <div className="paper">
+          <Message kind="fault">{errorText(error)}</Message>
+          <Link to={`/arms/${arm.id}/sequences`}>All sequences</Link>
+        </div>
+      </main>
+    );
+  if (!newest.data || !old.data)
     return (
       <main className="sheet">
         <p className="paper">Opening the sequence…</p>
       </main>
     );
-  if (sequence.isError)
-    return (
-      <main className="sheet">
-        <div className="paper">
-          <Message kind="fault">{errorText(sequence.error)}</Message>
-          <Link to={`/arms/${arm.id}/sequences`}>All sequences</Link>
-        </div>
-      </main>
-    );
-  return <SequenceEditor key={sequenceId} arm={arm} sequence={sequence.data} />;
+  const isOld = old.data.shownVersion !== newest.data.version;
+  return <SequenceEditor key={sequenceId} arm={arm} newest={newest.data} old={isOld ? old.data : null} />;
 }

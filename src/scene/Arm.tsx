@@ -2,9 +2,9 @@ import { useFrame } from '@react-three/fiber';
 import { useMemo, useRef } from 'react';
 import { Euler, type Group, Quaternion, Vector3 } from 'three';
 import type { ArmModel, Joint, LinkShape } from '../../shared/arm/model';
-import type { SceneSource } from './ArmScene';
 import { Along, Box, Cylinder } from './Solid';
 import { Sweep } from './Sweep';
+import type { SceneSource } from './source';
 
 /** Half the width of a link's section, m. */
 function halfWidth(shape: LinkShape): number {

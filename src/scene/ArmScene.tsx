@@ -5,24 +5,9 @@ import { Arm } from './Arm';
 import { Bench, Floor } from './Bench';
 import { CameraRig } from './CameraRig';
 import { InksContext, useReadInks } from './inks';
+import type { SceneSource } from './source';
 import { ChainLine, ToolTrace } from './Traces';
 import type { View } from './views';
-
-/** What the scene draws from: joint values in rad and m, the gripper from 0 to 1. */
-export interface SceneSample {
-  t: number;
-  q: readonly number[];
-  stopAt: readonly number[];
-  gripper: number | null;
-  tool: { position: [number, number, number] };
-  target?: readonly number[];
-  truth?: readonly number[];
-}
-export interface SceneSource {
-  sample(): SceneSample | null;
-  /** Calls back on every new sample; returns the unsubscribe function. */
-  subscribe(listener: () => void): () => void;
-}
 
 /** Between two pictures at least this long, ms, and at least this many times as long as the last one took. */
 const LEAST_PAUSE_MS = 30;

@@ -2,8 +2,8 @@ import { useFrame } from '@react-three/fiber';
 import { useEffect, useMemo } from 'react';
 import { BufferAttribute, BufferGeometry, Color, DoubleSide, Mesh, MeshBasicMaterial, Vector3 } from 'three';
 import type { Joint } from '../../shared/arm/model';
-import type { SceneSource } from './ArmScene';
 import { useInks } from './inks';
+import type { SceneSource } from './source';
 
 const SEGMENTS = 16;
 /** Shorter than this nothing is drawn, rad or m. */

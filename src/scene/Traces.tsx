@@ -3,8 +3,8 @@ import { useEffect, useMemo } from 'react';
 import { BufferAttribute, BufferGeometry, Line, LineDashedMaterial, Points, PointsMaterial } from 'three';
 import type { ArmModel } from '../../shared/arm/model';
 import { compileChain, forwardKinematics, linkFrames } from '../../shared/kinematics';
-import type { SceneSource } from './ArmScene';
 import { useInks } from './inks';
+import type { SceneSource } from './source';
 
 /** Ten seconds at ten dots a second. */
 const DOTS = 100;

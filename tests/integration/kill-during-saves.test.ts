@@ -1,27 +1,32 @@
-import { type ChildProcess, spawn } from 'node:child_process';
-import { existsSync, mkdtempSync, readFileSync, rmSync } from 'node:fs';
+import { type ChildProcess, execFileSync, spawn } from 'node:child_process';
+import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import Sqlite from 'better-sqlite3';
-import { afterAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { seededRandom } from '../../shared/kinematics';
 
 const ROUNDS = 50;
-/** `npm run verify` builds first; the built server is up in a second. */
-const SERVER = existsSync('dist/server/index.js')
-  ? ['dist/server/index.js']
-  : ['--import', 'tsx', 'server/index.ts'];
+/**
+ * The server as it is shipped (up in a second), built from today's sources and never from an older dist;
+ * inside the project, where it finds its packages.
+ */
+const built = 'node_modules/.cache/elbowroom-kill-during-saves';
 const folder = mkdtempSync(join(tmpdir(), 'elbowroom-kill-'));
 let child: ChildProcess | null = null;
 afterAll(() => {
   child?.kill('SIGKILL');
   rmSync(folder, { recursive: true, force: true });
+  rmSync(built, { recursive: true, force: true });
+});
+beforeAll(() => {
+  execFileSync(process.execPath, ['server/build.mjs', built]);
 });
 
 /** A server process of its own on this data folder; resolves with its address. */
 function start(): Promise<string> {
   return new Promise((resolve, reject) => {
-    const started = spawn(process.execPath, [...SERVER, '--demo'], {
+    const started = spawn(process.execPath, [join(built, 'server', 'index.js'), '--demo'], {
       env: { ...process.env, PORT: '0', ELBOWROOM_DATA: folder },
       stdio: ['ignore', 'pipe', 'pipe'],
     });

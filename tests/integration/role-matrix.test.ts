@@ -195,7 +195,8 @@ describe('every socket message × every role', () => {
     });
 
   it('opens no socket for a signed-out or disabled person', async () => {
-    for (const cookie of [{}, { Cookie: disabledCookie }]) {
+    const strangers: Record<string, string>[] = [{}, { Cookie: disabledCookie }];
+    for (const cookie of strangers) {
       const headers: Record<string, string> = { Origin: server.url, ...cookie };
       const socket = server.socket(server.arm('Wren'), headers);
       await socket.when(() => socket.refusedWith !== null);

@@ -125,7 +125,8 @@ export class Simulation {
     const board = rig.link.board.sample();
     this.page = rig.state;
     this.telemetry = rig.telemetry;
-    if (outputs.linkStop) checker.object('lastWord', rig.nowS, this.page.fault?.message ?? '');
+    for (const { event } of outputs.events)
+      if (event.code === 'supervisor') checker.object('lastWord', rig.nowS, event.message);
     this.count(delivered);
     const linkSteady = !rig.linkClosed;
     const cause = ledger.settle(delivered, outputs.answers, {

@@ -86,10 +86,11 @@ export class Ledger {
   settle(delivered: readonly Incoming[], answers: Answers, shown: Shown): Cause {
     for (const incoming of delivered) this.take(incoming, answers, shown);
     this.passTime(shown);
+    this.finish(shown);
     this.compare(shown);
     this.restrict(shown);
     this.followRun(shown);
-    this.note(shown);
+    this.q = [...shown.q];
     return this.decide(shown.t);
   }
 
@@ -395,10 +396,9 @@ export class Ledger {
     return recounted || q.every((value, j) => value === this.q[j]);
   }
 
-  /** Remembers where the arm is. A nudge, and a hold that is for one way, are over when the arm rests again. */
-  private note(shown: Shown): void {
+  /** A nudge, and a hold that is for one way, are over when the arm rests again. */
+  private finish(shown: Shown): void {
     const still = this.rests(shown);
-    this.q = [...shown.q];
     for (const act of [this.nudge, this.hold]) if (act && !still) act.moved = true;
     if (!still) return;
     if (this.nudge?.moved) this.nudge = null;

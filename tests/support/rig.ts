@@ -1,3 +1,4 @@
+import type { DriveTruth } from '../../firmware-sim/drive-truth';
 import { step } from '../../server/control/controller';
 import type { Actor, Resolved } from '../../server/control/process-messages';
 import { stateMessage, telemetryMessage } from '../../server/control/snapshot';
@@ -35,12 +36,19 @@ export class Rig {
 
   constructor(
     readonly model: ArmModel,
-    options: { seed?: number; strength?: readonly number[]; unattended?: boolean } = {},
+    options: {
+      seed?: number;
+      /** Per joint, how the simulated arm differs from its model. */
+      truths?: readonly DriveTruth[];
+      /** The same for motor strength alone. */
+      strength?: readonly number[];
+      unattended?: boolean;
+    } = {},
   ) {
     this.link = new BuiltInLink({
       model,
       seed: options.seed ?? 1,
-      strength: options.strength,
+      truths: options.truths ?? options.strength?.map((strength) => ({ strength })),
       tickS: TICK_S,
     });
     this.controller = createController(model, {
@@ -100,7 +108,8 @@ export class Rig {
       const { setpoint } = this.outputs;
       if (setpoint) {
         this.setpoints.push({ t: this.nowS, q: Array.from(setpoint.q) });
-        this.link.send(setpoint);
+        if (this.outputs.replace) this.link.replaceFrom(setpoint);
+        else this.link.send(setpoint);
       }
       this.records.push(...this.outputs.records);
       this.events.push(...this.outputs.events);

@@ -10,10 +10,10 @@ import { Dialog } from '../../components/Dialog';
 import { Field } from '../../components/Field';
 import { Message } from '../../components/Message';
 import { Segmented } from '../../components/Segmented';
+import { toast } from '../../components/toast';
 import { when } from '../../components/when';
 import { useArmState, useHello } from '../../live/use-live';
 import type { View } from '../../scene/views';
-import { toast } from '../shell/toast';
 import { JointForm, ToolForm } from './JointForm';
 import {
   beginModel,

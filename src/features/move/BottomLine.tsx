@@ -4,10 +4,10 @@ import { worstTrust } from '../../../shared/arm/trust';
 import { shownValue } from '../../../shared/arm/units';
 import { may } from '../../../shared/team/roles';
 import { Message } from '../../components/Message';
+import { toast } from '../../components/toast';
 import { sendCommand } from '../../live/connection';
 import { type HoldEnd, lastHoldEnd, onHoldChange, onHoldRefused } from '../../live/hold';
 import { useArmState, useHello, useInControl, useTelemetry } from '../../live/use-live';
-import { toast } from '../shell/toast';
 import { DeclareDialog } from './JointValuesDialog';
 import { RestCard } from './RestCard';
 

@@ -2,9 +2,9 @@ import { useEffect, useState } from 'react';
 import { CEILINGS } from '../../../shared/arm/trust';
 import { CeilingIcon, LockIcon } from '../../components/icons';
 import { Segmented } from '../../components/Segmented';
+import { toast } from '../../components/toast';
 import { sendCommand } from '../../live/connection';
 import { useArmState } from '../../live/use-live';
-import { toast } from '../shell/toast';
 
 /** The person's ceiling. While the arm moves it can only be lowered; above what trust allows it has no effect yet. */
 export function CeilingControl({ reason, moving }: { reason: string | null; moving: boolean }) {

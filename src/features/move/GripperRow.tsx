@@ -1,9 +1,9 @@
 import type { Gripper } from '../../../shared/arm/model';
 import { mToMm } from '../../../shared/arm/units';
 import { Pictogram } from '../../components/pictograms';
+import { toast } from '../../components/toast';
 import { sendCommand } from '../../live/connection';
 import { useArmState } from '../../live/use-live';
-import { toast } from '../shell/toast';
 
 /** One press opens or closes a little further; the gripper moves slowly and by itself, a bounded act. */
 const STEP = 0.1;

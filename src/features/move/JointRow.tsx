@@ -5,9 +5,9 @@ import { HoldButton } from '../../components/HoldButton';
 import { Pictogram } from '../../components/pictograms';
 import { TorqueUsed } from '../../components/TorqueUsed';
 import { TravelBar } from '../../components/TravelBar';
+import { toast } from '../../components/toast';
 import { readyStop, sendCommand } from '../../live/connection';
 import { useArmState, useTelemetry } from '../../live/use-live';
-import { toast } from '../shell/toast';
 
 /** Nearer to a soft limit than this a joint is at it, rad or m. */
 const AT_LIMIT = 1e-5;

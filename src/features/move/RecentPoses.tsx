@@ -5,9 +5,9 @@ import { may } from '../../../shared/team/roles';
 import { errorText } from '../../api/client';
 import { useCapturePose, usePoses } from '../../api/poses';
 import { Silhouette } from '../../components/Silhouette';
+import { toast } from '../../components/toast';
 import { ago } from '../../components/when';
 import { useArmState, useHello } from '../../live/use-live';
-import { toast } from '../shell/toast';
 
 export function useCapture(arm: Arm) {
   const capture = useCapturePose(arm.id);

@@ -1,10 +1,10 @@
 import { useState } from 'react';
 import type { ArmModel } from '../../../shared/arm/model';
 import { may } from '../../../shared/team/roles';
+import { namesOf } from '../../components/joint-names';
+import { toast } from '../../components/toast';
 import { sendCommand } from '../../live/connection';
 import { useArmState, useHello, useInControl } from '../../live/use-live';
-import { namesOf } from '../shell/MotorsOffDialog';
-import { toast } from '../shell/toast';
 import { EnergiseDialog } from './EnergiseDialog';
 
 /** At rest: what Energise will do, said before it does it. */

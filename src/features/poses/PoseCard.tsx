@@ -1,18 +1,13 @@
+import { memo, useMemo } from 'react';
 import type { Pose } from '../../../shared/api/resources';
 import type { ArmModel } from '../../../shared/arm/model';
 import { TrustIcon, WarnIcon } from '../../components/icons';
 import { Silhouette } from '../../components/Silhouette';
-import { ago } from '../../components/when';
+import { when } from '../../components/when';
+import { cardNote, poseFacts } from './pose-facts';
 
-/** Whether every joint value lies inside the soft limits of today's arm. */
-export function reachable(model: ArmModel, q: readonly number[]): boolean {
-  return (
-    q.length === model.joints.length &&
-    model.joints.every((joint, i) => q[i]! >= joint.limits.lower - 1e-9 && q[i]! <= joint.limits.upper + 1e-9)
-  );
-}
-
-export function PoseCard({
+/** An index card: silhouette, how sure it is, tags, one note, who and when. */
+export const PoseCard = memo(function PoseCard({
   model,
   pose,
   chosen,
@@ -21,23 +16,27 @@ export function PoseCard({
   model: ArmModel;
   pose: Pose;
   chosen: boolean;
-  onChoose: () => void;
+  onChoose: (id: string) => void;
 }) {
-  const inside = reachable(model, pose.q);
+  const facts = useMemo(() => poseFacts(model, pose), [model, pose]);
+  const note = cardNote(model, pose, facts);
+  const reachable = facts.fits && facts.beyond.length === 0;
   return (
     <button
       type="button"
-      className={`icard pc ${pose.trust === 'declared' ? 'declared' : ''} ${inside ? '' : 'out'} ${chosen ? 'sel' : ''}`}
+      className={`icard pc ${pose.trust === 'declared' ? 'declared' : ''} ${reachable ? '' : 'out'} ${chosen ? 'sel' : ''}`}
       aria-pressed={chosen}
-      onClick={onChoose}
+      onClick={() => onChoose(pose.id)}
     >
       <span className="name">
-        <TrustIcon trust={pose.trust} />
-        {pose.name}
-        {pose.revision > 1 && <span className="end note">re-taught {pose.revision - 1}×</span>}
+        <span className="words">{pose.name}</span>
+        <span className="end">
+          <TrustIcon trust={pose.trust} />
+          <span className="vh">{pose.trust}</span>
+        </span>
       </span>
       <span className="bd">
-        <Silhouette model={model} q={pose.q} />
+        {facts.fits ? <Silhouette model={model} q={pose.q} gripper={pose.gripper} size="card" /> : <span />}
         <span className="tx">
           <span className="tags">
             {pose.tags.map((tag) => (
@@ -46,19 +45,19 @@ export function PoseCard({
               </span>
             ))}
           </span>
-          {inside ? (
-            <span className="nb">{pose.note}</span>
-          ) : (
+          {note.warns ? (
             <span className="nb warn">
               <WarnIcon />
-              outside today’s limits
+              <span>{note.text}</span>
             </span>
+          ) : (
+            <span className="nb">{note.text}</span>
           )}
           <span className="who">
-            {pose.by}, {ago(pose.atMs)}
+            {pose.by}, {when(pose.atMs)}
           </span>
         </span>
       </span>
     </button>
   );
-}
+});

@@ -1,224 +1,184 @@
-import { useEffect, useState } from 'react';
+import { useMemo, useState } from 'react';
 import type { Arm, Pose } from '../../../shared/api/resources';
-import { figure, shownUnit, shownValue, toShown } from '../../../shared/arm/units';
+import { torqueWord } from '../../../shared/arm/drives';
+import { worstTrust } from '../../../shared/arm/trust';
+import { shownValue } from '../../../shared/arm/units';
 import { may } from '../../../shared/team/roles';
 import { errorText } from '../../api/client';
-import {
-  useChangePose,
-  useDeletePose,
-  usePoseRevisions,
-  useRestorePose,
-  useReteachPose,
-  useUndeletePose,
-} from '../../api/poses';
-import { Field } from '../../components/Field';
-import { GoButton } from '../../components/HoldButton';
-import { Message } from '../../components/Message';
+import { useDeletePose, useUndeletePose } from '../../api/poses';
 import { Silhouette } from '../../components/Silhouette';
-import { when } from '../../components/when';
-import { useArmState, useHello, useInControl, useTelemetry } from '../../live/use-live';
-import { toast } from '../shell/toast';
-import { reachable } from './PoseCard';
+import { toast } from '../../components/toast';
+import { useArmState, useHello, useTelemetry } from '../../live/use-live';
+import { CompareBars } from './CompareBar';
+import { GoToPose } from './GoToPose';
+import { LabelDialog } from './LabelDialog';
+import { NEAR_LIMIT, percent, poseFacts, timeToGo } from './pose-facts';
+import { ReteachDialog } from './ReteachDialog';
+import { RevisionsDialog } from './RevisionsDialog';
 
-/** One pose beside the arm as it is now: compare, go there, re-teach, label, revisions. */
+/** Slow enough to read, and to leave the main thread to holds. */
+const COMPARE_HZ = 5;
+const TIME_HZ = 1;
+const ORIGIN_WORDS = { captured: 'Captured', typed: 'Typed', imported: 'Imported' };
+const round4 = (q: readonly number[]) => q.map((value) => Math.round(value * 1e4) / 1e4);
+
+/** One pose beside the arm as it is now: how far apart, what it takes, hold to go, and what can be done to it. */
 export function PoseDetail({ arm, pose, onGone }: { arm: Arm; pose: Pose; onGone: () => void }) {
   const { model } = arm;
-  const role = useHello()?.you.role ?? 'observer';
-  const teaches = may(role, 'pose.edit');
-  const now = useTelemetry((t) => t?.q ?? null, 5);
-  const known = useArmState((state) =>
-    (state?.trust ?? []).every((t) => t === 'declared' || t === 'referenced'),
-  );
-  const standing = useArmState((state) => state?.motors === 'standing');
-  const energised = useArmState((state) => state?.energised.some(Boolean) ?? false);
-  const inControl = useInControl();
-  const reteach = useReteachPose(arm.id);
-  const remove = useDeletePose(arm.id);
-  const undelete = useUndeletePose(arm.id);
-  const inside = reachable(model, pose.q);
-  const whyNot = !may(role, 'arm.control')
-    ? 'operators move the arm'
-    : !energised
-      ? 'energise on Move first'
-      : !inControl
-        ? 'take control first'
-        : !known
-          ? 'the position is not known'
-          : !inside
-            ? 'outside the soft limits'
-            : null;
-  const difference = (i: number) => (now && known ? pose.q[i]! - now[i]! : null);
+  const [asking, setAsking] = useState<'reteach' | 'label' | 'revisions' | null>(null);
+  const trust = useArmState((state) => state?.trust ?? []);
+  const worst = worstTrust(trust);
+  const known = worst === 'declared' || worst === 'referenced';
+  const sample = useTelemetry((t) => (t ? round4(t.q) : null), COMPARE_HZ);
+  const now = known ? sample : null;
+  const opening = useArmState((state) => (state?.gripper?.energised ? state.gripper.opening : null));
+  const facts = useMemo(() => poseFacts(model, pose), [model, pose]);
+  const reachable = facts.fits && facts.beyond.length === 0;
+  const teaches = may(useHello()?.you.role ?? 'observer', 'pose.edit');
   return (
-    <aside className="pane cmp" aria-label={`Pose ${pose.name}`}>
+    <section className="pane cmp" aria-label={`Pose ${pose.name}`}>
       <div className="cap">
-        <h2 className="h2">{pose.name}</h2>
-        <span className="note">
-          {pose.origin} by {pose.by}, {when(pose.atMs)}, {pose.trust}
-        </span>
+        <h2 className="h2">
+          {pose.name}
+          {now ? ', compared with now' : ''}
+        </h2>
+        <button type="button" className="btn sm bare end phone-only" onClick={onGone}>
+          All poses
+        </button>
       </div>
       <div className="pic">
-        <Silhouette model={model} q={pose.q} ghost={known && now ? now : undefined} />
-        <p className="note">{known && now ? 'Dashed: the arm now.' : 'Where the arm is now is not known.'}</p>
-      </div>
-      <div className="stack">
-        <table>
-          <thead>
-            <tr>
-              <th>Joint</th>
-              <th className="r">Pose</th>
-              <th className="r">From now</th>
-            </tr>
-          </thead>
-          <tbody>
-            {model.joints.map((joint, i) => {
-              const d = difference(i);
-              return (
-                <tr key={joint.name}>
-                  <td>{joint.name}</td>
-                  <td className="r n">{pose.q[i] === undefined ? '–' : shownValue(joint.type, pose.q[i])}</td>
-                  <td className="r n plan">
-                    {d === null
-                      ? '–'
-                      : Math.abs(toShown(joint.type, d)) < 0.05
-                        ? 'same'
-                        : `${d > 0 ? '+' : ''}${figure(toShown(joint.type, d), 1)}${shownUnit(joint.type) === '°' ? '°' : ' mm'}`}
-                  </td>
-                </tr>
-              );
-            })}
-            {pose.gripper !== null && model.gripper && (
-              <tr>
-                <td>Gripper</td>
-                <td className="r n">{(pose.gripper * model.gripper.opening * 1000).toFixed(1)} mm</td>
-                <td className="r">not moved by “go”</td>
-              </tr>
-            )}
-          </tbody>
-        </table>
-        <div className="act">
-          <GoButton
-            id={`pose-${pose.id}`}
-            motion={{ kind: 'pose', poseId: pose.id }}
-            hint={whyNot ?? 'all joints together; letting go stops it'}
-            disabled={whyNot !== null}
-          >
-            Hold to go there
-          </GoButton>
-        </div>
-        {teaches && (
-          <div className="line">
-            <button
-              type="button"
-              className="btn"
-              disabled={!standing || !known || reteach.isPending}
-              onClick={() =>
-                reteach.mutate(pose.id, {
-                  onSuccess: () =>
-                    toast(`“${pose.name}” is now where the arm stands. The old place stays as a revision.`),
-                  onError: (error) => toast(errorText(error)),
-                })
-              }
-            >
-              Re-teach here
-            </button>
-            <button
-              type="button"
-              className="btn bare"
-              onClick={() =>
-                remove.mutate(pose.id, {
-                  onSuccess: () => {
-                    toast(`“${pose.name}” deleted.`, {
-                      label: 'Undo',
-                      onClick: () => undelete.mutate(pose.id),
-                    });
-                    onGone();
-                  },
-                })
-              }
-            >
-              Delete
-            </button>
-          </div>
+        {facts.fits ? (
+          <Silhouette
+            model={model}
+            q={now}
+            gripper={opening}
+            ghost={pose.q}
+            ghostGripper={pose.gripper}
+            size="large"
+          />
+        ) : (
+          <span />
         )}
-        {teaches && <LabelForm armId={arm.id} pose={pose} />}
-        <Revisions arm={arm} pose={pose} teaches={teaches} />
+        <Facts arm={arm} pose={pose} known={known} />
       </div>
-    </aside>
-  );
-}
-
-function LabelForm({ armId, pose }: { armId: string; pose: Pose }) {
-  const change = useChangePose(armId);
-  const [name, setName] = useState(pose.name);
-  const [tags, setTags] = useState(pose.tags.join(', '));
-  const [note, setNote] = useState(pose.note);
-  useEffect(() => {
-    setName(pose.name);
-    setTags(pose.tags.join(', '));
-    setNote(pose.note);
-  }, [pose]);
-  const list = tags
-    .split(',')
-    .map((tag) => tag.trim())
-    .filter(Boolean);
-  const same = name === pose.name && note === pose.note && list.join() === pose.tags.join();
-  return (
-    <form
-      className="stack"
-      onSubmit={(event) => {
-        event.preventDefault();
-        change.mutate({ id: pose.id, name, tags: list, note });
-      }}
-    >
-      <Field label="Name" value={name} maxLength={60} onChange={(event) => setName(event.target.value)} />
-      <Field
-        label="Tags"
-        help="separated by commas"
-        value={tags}
-        onChange={(event) => setTags(event.target.value)}
-      />
-      <Field label="Note" value={note} maxLength={500} onChange={(event) => setNote(event.target.value)} />
-      {change.isError && <Message kind="fault">{errorText(change.error)}</Message>}
-      <p>
-        <button type="submit" className="btn sm" disabled={same || !name.trim() || change.isPending}>
-          Save labels
-        </button>
-      </p>
-    </form>
-  );
-}
-
-function Revisions({ arm, pose, teaches }: { arm: Arm; pose: Pose; teaches: boolean }) {
-  const revisions = usePoseRevisions(arm.id, pose.id).data ?? [];
-  const restore = useRestorePose(arm.id);
-  if (revisions.length < 2) return null;
-  return (
-    <section>
-      <h3 className="h3">Revisions</h3>
-      <ul>
-        {revisions.map((r) => (
-          <li key={r.revision} className="line small">
-            <span className="n">{r.revision}</span>
-            <span>
-              {r.origin} by {r.by}, {when(r.atMs)}, {r.trust}
-            </span>
-            {r.revision === pose.revision ? (
-              <span className="tag end">now</span>
-            ) : (
-              teaches && (
-                <button
-                  type="button"
-                  className="btn sm bare end"
-                  disabled={restore.isPending}
-                  onClick={() => restore.mutate({ id: pose.id, revision: r.revision })}
-                >
-                  Restore
-                </button>
-              )
-            )}
-          </li>
-        ))}
-      </ul>
+      {facts.fits ? (
+        <CompareBars
+          model={model}
+          q={pose.q}
+          gripper={pose.gripper}
+          now={now}
+          nowOpening={opening}
+          trust={trust}
+        />
+      ) : (
+        <p className="small">
+          This pose has {pose.q.length} joints; {model.name} has {model.joints.length}. Re-teach it.
+        </p>
+      )}
+      <div className="act">
+        {pose.note && <p className="small">{pose.note}</p>}
+        <GoToPose arm={arm} pose={pose} reachable={reachable} trust={worst} />
+        <div className="row">
+          <button type="button" className="btn bare sm" onClick={() => setAsking('revisions')}>
+            Revisions ({pose.revision})
+          </button>
+          {teaches ? (
+            <>
+              <button type="button" className="btn bare sm" onClick={() => setAsking('reteach')}>
+                Re-teach…
+              </button>
+              <button type="button" className="btn bare sm" onClick={() => setAsking('label')}>
+                Rename or tag…
+              </button>
+              <DeleteButton armId={arm.id} pose={pose} onGone={onGone} />
+            </>
+          ) : (
+            <span className="note">Teachers re-teach, rename and delete poses.</span>
+          )}
+        </div>
+      </div>
+      <ReteachDialog arm={arm} pose={pose} open={asking === 'reteach'} onClose={() => setAsking(null)} />
+      <LabelDialog armId={arm.id} pose={pose} open={asking === 'label'} onClose={() => setAsking(null)} />
+      <RevisionsDialog arm={arm} pose={pose} open={asking === 'revisions'} onClose={() => setAsking(null)} />
     </section>
+  );
+}
+
+/** Time, torque, the nearest limit, and how this pose came to be. */
+function Facts({ arm, pose, known }: { arm: Arm; pose: Pose; known: boolean }) {
+  const { model } = arm;
+  const facts = useMemo(() => poseFacts(model, pose), [model, pose]);
+  const from = useTelemetry((t) => (t ? round4(t.q) : null), TIME_HZ);
+  const ceiling = useArmState((state) => state?.ceiling.fraction ?? null);
+  const seconds = useMemo(
+    () => (known && from && ceiling !== null && facts.fits ? timeToGo(model, from, pose.q, ceiling) : null),
+    [known, from, ceiling, facts.fits, model, pose.q],
+  );
+  const { nearest, torque, beyond } = facts;
+  const past = beyond[0];
+  const nearJoint = nearest && model.joints[nearest.joint];
+  const tight =
+    nearest && nearJoint
+      ? nearest.margin < NEAR_LIMIT * (nearJoint.limits.upper - nearJoint.limits.lower)
+      : false;
+  return (
+    <ul>
+      <li>
+        Time at {ceiling === null ? 'the ceiling' : percent(ceiling)}
+        <b className="n">{seconds === null ? '–' : `${seconds.toFixed(1)} s`}</b>
+      </li>
+      {torque && (
+        <li className={torque.used >= 0.8 ? 'w' : ''}>
+          Torque used
+          <b>
+            <span className="n">{percent(torque.used)}</span> · {torqueWord(torque.used)}
+          </b>
+        </li>
+      )}
+      {past !== undefined ? (
+        <li className="w">
+          Past its limit<b>{(model.joints[past]?.name ?? '').toLowerCase()}</b>
+        </li>
+      ) : (
+        nearest &&
+        nearJoint && (
+          <li className={tight ? 'w' : ''}>
+            Nearest limit
+            <b>
+              {nearJoint.name.toLowerCase()}{' '}
+              <span className="n">{shownValue(nearJoint.type, nearest.margin)}</span>
+            </b>
+          </li>
+        )
+      )}
+      <li>
+        {ORIGIN_WORDS[pose.origin]}, {pose.trust}
+        <b>{pose.by}</b>
+      </li>
+    </ul>
+  );
+}
+
+function DeleteButton({ armId, pose, onGone }: { armId: string; pose: Pose; onGone: () => void }) {
+  const remove = useDeletePose(armId);
+  const undelete = useUndeletePose(armId);
+  const undo = () => undelete.mutate(pose.id, { onError: (error) => toast(errorText(error)) });
+  return (
+    <button
+      type="button"
+      className="btn bare sm"
+      disabled={remove.isPending}
+      onClick={() =>
+        remove.mutate(pose.id, {
+          onSuccess: () => {
+            toast(`“${pose.name}” was deleted.`, { label: 'Undo', onClick: undo });
+            onGone();
+          },
+          onError: (error) => toast(errorText(error)),
+        })
+      }
+    >
+      Delete
+    </button>
   );
 }

@@ -1,132 +1,186 @@
-import { useEffect, useState } from 'react';
+import { useState } from 'react';
+import { Link } from 'react-router-dom';
 import type { Sequence } from '../../../shared/api/resources';
-import { CEILINGS } from '../../../shared/arm/trust';
+import type { Step } from '../../../shared/sequence/steps';
 import { may } from '../../../shared/team/roles';
-import { GoButton } from '../../components/HoldButton';
 import { PauseIcon, PlayIcon, StepIcon } from '../../components/icons';
-import { Segmented } from '../../components/Segmented';
-import { durationText } from '../../components/when';
-import { type Command, readyStop, sendCommand } from '../../live/connection';
-import { onHoldRefused } from '../../live/hold';
-import { useArmState, useHello, useInControl } from '../../live/use-live';
-import { toast } from '../shell/toast';
-import { beep } from './beep';
+import { useLiveStore } from '../../live/live-store';
+import { useArmState, useConnection, useHello, useInControl } from '../../live/use-live';
+import { Running } from './Running';
+import { sendRun } from './send-run';
+import type { StepRow } from './step-tree';
 
-/** Run, one step, from here; pause, resume, end; the held first cycle. */
+const MOST_CYCLES = 100_000;
+
+/** The first step that does something: a remark does nothing, a repeat begins with what it holds. */
+export function firstDoing(step: Step): Step | null {
+  if (step.kind === 'remark') return null;
+  if (step.kind !== 'again') return step;
+  for (const inner of step.steps) {
+    const doing = firstDoing(inner);
+    if (doing) return doing;
+  }
+  return null;
+}
+
+/** Why a run cannot start, in words that say what to do; null when it can. */
+function useReason(sequence: Sequence, dirty: boolean): string | null {
+  const connection = useConnection();
+  const role = useHello()?.you.role ?? 'observer';
+  const inControl = useInControl();
+  const resting = useArmState((state) => state === null || !state.energised.every(Boolean));
+  const fault = useArmState((state) => state !== null && state.fault !== null);
+  const known = useArmState((state) =>
+    (state?.trust ?? []).every((trust) => trust === 'declared' || trust === 'referenced'),
+  );
+  const approved = sequence.approvedVersion === sequence.shownVersion && (sequence.approval?.holds ?? false);
+  if (!may(role, 'sequence.run')) return 'Operators run sequences; you are watching.';
+  if (!may(role, 'sequence.runUnapproved') && !approved)
+    return `Version ${sequence.shownVersion} is not approved for operators. Ask a teacher.`;
+  if (dirty) return 'Save your changes first.';
+  if (sequence.steps.length === 0) return 'There is no step to run yet.';
+  if (connection !== 'live') return 'No connection to the arm.';
+  if (resting) return 'The motors are resting. Energise on Move.';
+  if (fault) return 'A fault waits to be acknowledged on Move.';
+  if (!inControl) return 'Take control first.';
+  if (!known) return 'The position is not known. Declare or reference it on Move.';
+  return null;
+}
+
+/** Run, one step, from here; while it runs: hold, pause, resume, end. */
 export function RunBar({
   sequence,
   dirty,
-  fromStep,
+  from,
 }: {
   sequence: Sequence;
   dirty: boolean;
-  fromStep: string | null;
+  /** The step in hand. */
+  from: StepRow | null;
 }) {
+  const run = useArmState((state) => state?.run ?? null);
+  const armId = useLiveStore((live) => live.armId);
+  if (run && run.sequenceId === sequence.id) return <Running run={run} />;
+  if (run)
+    return (
+      <section className="pane run" aria-label="Run">
+        <p className="small">
+          <b>{run.sequenceName}</b> is {run.phase === 'paused' ? 'paused' : 'running'}: cycle{' '}
+          <span className="n">{run.cycle}</span>, step <span className="n">{run.stepPath}</span>.
+        </p>
+        <Link className="btn" to={`/arms/${armId}/sequences/${run.sequenceId}`}>
+          Show it
+        </Link>
+      </section>
+    );
+  return <Ready sequence={sequence} dirty={dirty} from={from} />;
+}
+
+function Ready({ sequence, dirty, from }: { sequence: Sequence; dirty: boolean; from: StepRow | null }) {
   const [cycles, setCycles] = useState(1);
   const [endless, setEndless] = useState(false);
-  const run = useArmState((state) => state?.run ?? null);
-  const ceiling = useArmState((state) => state?.ceiling.person ?? CEILINGS.creep);
-  const known = useArmState((state) =>
-    (state?.trust ?? []).every((t) => t === 'declared' || t === 'referenced'),
-  );
-  const energised = useArmState((state) => state?.energised.some(Boolean) ?? false);
-  const fault = useArmState((state) => state?.fault !== null && state !== null);
-  const inControl = useInControl();
-  const role = useHello()?.you.role ?? 'observer';
-  useEffect(() => onHoldRefused(toast), []);
-  const send = (command: Command) => {
-    readyStop();
-    void sendCommand(command).then((outcome) => {
-      if (!outcome.ok) toast(outcome.message);
-    });
-  };
-
-  if (run && run.sequenceId === sequence.id)
-    return <Running inControl={inControl} send={send} ceiling={ceiling} />;
-  const approved = sequence.approval?.holds && sequence.approvedVersion === sequence.shownVersion;
-  const reason = run
-    ? `${run.sequenceName} is running`
-    : !may(role, 'sequence.run')
-      ? 'operators run sequences'
-      : !may(role, 'sequence.runUnapproved') && !approved
-        ? 'this version is not approved for operators'
-        : dirty
-          ? 'save your edits first'
-          : !energised
-            ? 'energise on Move first'
-            : !inControl
-              ? 'take control first'
-              : fault
-                ? 'acknowledge the fault first'
-                : !known
-                  ? 'declare or reference the position first'
-                  : null;
+  const reason = useReason(sequence, dirty);
+  const arm = useHello()?.arm.model.name ?? 'The arm';
+  const doing = from ? firstDoing(from.step) : null;
   const start = (extra: { single?: boolean; fromStep?: string }) =>
-    send({
+    sendRun({
       type: 'run.start',
       sequenceId: sequence.id,
       version: sequence.shownVersion,
       cycles: endless ? null : cycles,
       ...extra,
     });
+  const off = reason !== null;
   return (
     <section className="pane run" aria-label="Run">
-      <button type="button" className="go sm ink" disabled={reason !== null} onClick={() => start({})}>
+      <button type="button" className={`go sm ${off ? '' : 'ink'}`} disabled={off} onClick={() => start({})}>
         <PlayIcon />
         <span>
           Run
-          <small>{sequence.proven ? 'after 3 s' : 'first cycle held'}</small>
+          <small>{sequence.proven ? 'from step 1, after 3 s' : 'first cycle held'}</small>
         </span>
       </button>
       <button
         type="button"
         className="go sm"
-        disabled={reason !== null}
-        onClick={() => start({ single: true })}
+        disabled={off}
+        onClick={() => start({ single: true, fromStep: doing?.id })}
       >
         <StepIcon />
         <span>
           Run one step
-          <small>then wait</small>
+          <small>{from && doing ? `${from.path}, then wait` : 'then wait'}</small>
         </span>
       </button>
       <button
         type="button"
         className="go sm"
-        disabled={reason !== null || fromStep === null}
-        onClick={() => fromStep && start({ fromStep })}
+        disabled={off || !doing}
+        onClick={() => doing && start({ fromStep: doing.id })}
       >
         <PlayIcon />
         <span>
           Run from here
-          <small>{fromStep ? 'the chosen step' : 'choose a step'}</small>
+          <small>{from && doing ? `step ${from.path}` : 'choose a step'}</small>
         </span>
       </button>
-      <div className="entry" style={{ width: 178 }}>
+      <button type="button" className="pause" disabled>
+        <PauseIcon /> Pause
+      </button>
+      <Cycles cycles={cycles} setCycles={setCycles} endless={endless} setEndless={setEndless} />
+      <p className="sp small quiet" role="status">
+        {reason ? (
+          <b>{reason}</b>
+        ) : sequence.proven ? (
+          'Ready.'
+        ) : (
+          <b>The first cycle of this version is held: keep the button pressed, at most easy.</b>
+        )}
+        <br />
+        If the link drops while running, {arm} stops and stands where it is.
+      </p>
+    </section>
+  );
+}
+
+function Cycles({
+  cycles,
+  setCycles,
+  endless,
+  setEndless,
+}: {
+  cycles: number;
+  setCycles: (cycles: number) => void;
+  endless: boolean;
+  setEndless: (endless: boolean) => void;
+}) {
+  const set = (wanted: number) => setCycles(Math.min(MOST_CYCLES, Math.max(1, Math.round(wanted) || 1)));
+  return (
+    <div className="cycles" role="group" aria-label="How often">
+      <div className={`entry ${endless ? 'locked' : ''}`}>
         <button
           type="button"
           className="step"
           aria-label="Fewer cycles"
-          disabled={endless}
-          onClick={() => setCycles(Math.max(1, cycles - 1))}
+          disabled={endless || cycles <= 1}
+          onClick={() => set(cycles - 1)}
         >
           −
         </button>
         <input
           aria-label="Cycles"
           inputMode="numeric"
-          value={endless ? '∞' : cycles}
+          value={endless ? '–' : cycles}
           disabled={endless}
-          onChange={(event) =>
-            setCycles(Math.min(100_000, Math.max(1, Math.round(Number(event.target.value)) || 1)))
-          }
+          onChange={(event) => set(Number(event.target.value))}
         />
+        <span className="word">{cycles === 1 ? 'cycle' : 'cycles'}</span>
         <button
           type="button"
           className="step"
           aria-label="More cycles"
           disabled={endless}
-          onClick={() => setCycles(cycles + 1)}
+          onClick={() => set(cycles + 1)}
         >
           +
         </button>
@@ -135,121 +189,6 @@ export function RunBar({
         <input type="checkbox" checked={endless} onChange={(event) => setEndless(event.target.checked)} />
         until stopped
       </label>
-      <p className="sp small quiet">
-        {reason ? (
-          <b>{reason}</b>
-        ) : sequence.proven ? (
-          'Ready.'
-        ) : (
-          'Ready. The first cycle of this version is held at creep or easy.'
-        )}{' '}
-        <br />
-        If the link drops while it runs, the arm stops and stands.
-      </p>
-    </section>
-  );
-}
-
-function Running({
-  inControl,
-  send,
-  ceiling,
-}: {
-  inControl: boolean;
-  send: (command: Command) => void;
-  ceiling: number;
-}) {
-  const run = useArmState((state) => state?.run ?? null);
-  const phase = run?.phase;
-  const count = run?.countdownS ?? 0;
-  useEffect(() => {
-    if (phase === 'countdown' && count > 0) beep(count === 1 ? 880 : 620);
-  }, [phase, count]);
-  if (!run) return null;
-  const last = run.cycleTimes.at(-1);
-  return (
-    <section className="pane run" aria-label="Run under way">
-      {run.phase === 'heldWaiting' || run.phase === 'heldRunning' ? (
-        <GoButton
-          id="run-held"
-          motion={{ kind: 'run' }}
-          hint="the first cycle is held; letting go pauses"
-          disabled={!inControl}
-        >
-          Hold to run
-        </GoButton>
-      ) : run.phase === 'paused' ? (
-        <button
-          type="button"
-          className="go sm ink"
-          disabled={!inControl}
-          onClick={() => send({ type: 'run.resume' })}
-        >
-          <PlayIcon />
-          <span>
-            Resume
-            <small>after 3 s</small>
-          </span>
-        </button>
-      ) : run.phase === 'stepWaiting' ? (
-        <button
-          type="button"
-          className="go sm ink"
-          disabled={!inControl}
-          onClick={() => send({ type: 'run.step' })}
-        >
-          <StepIcon />
-          <span>
-            Next step
-            <small>{run.stepPath}, then wait</small>
-          </span>
-        </button>
-      ) : (
-        <button
-          type="button"
-          className="pause"
-          disabled={!inControl || run.phase === 'pausing'}
-          onClick={() => send({ type: 'run.pause' })}
-        >
-          <PauseIcon /> Pause
-        </button>
-      )}
-      <button type="button" className="btn" disabled={!inControl} onClick={() => send({ type: 'run.end' })}>
-        End the run
-      </button>
-      <Segmented
-        label="Ceiling, live"
-        value={ceiling}
-        locked={!inControl}
-        options={[
-          { value: CEILINGS.creep as number, label: 'creep' },
-          { value: CEILINGS.easy as number, label: 'easy' },
-          { value: CEILINGS.full as number, label: 'full' },
-        ]}
-        onChange={(fraction) => send({ type: 'ceiling.set', fraction })}
-      />
-      <p className="sp small" role="status">
-        <b>
-          {run.phase === 'countdown' ? (
-            <>
-              Moves in <span className="n">{run.countdownS}</span>
-            </>
-          ) : (
-            <>
-              Cycle <span className="n">{Math.min(run.cycle, run.cycles ?? run.cycle)}</span>
-              {run.cycles ? (
-                <>
-                  {' '}
-                  of <span className="n">{run.cycles}</span>
-                </>
-              ) : null}
-              , step <span className="n">{run.stepPath}</span>
-            </>
-          )}
-        </b>
-        <br />
-        <span className="quiet">{run.reason ?? (last ? `last cycle ${durationText(last)}` : '')}</span>
-      </p>
-    </section>
+    </div>
   );
 }

@@ -41,7 +41,7 @@ function NumberField({
   );
 }
 
-/** The fields of one step. Every change is one step of undo. */
+/** The fields of one step. Letters typed into one field (`field`) are undone together. */
 export function StepForm({
   step,
   poses,
@@ -51,7 +51,7 @@ export function StepForm({
   step: Step;
   poses: readonly Pose[];
   model: ArmModel;
-  onChange: (step: Step) => void;
+  onChange: (step: Step, field?: string) => void;
 }) {
   switch (step.kind) {
     case 'goTo':
@@ -84,7 +84,7 @@ export function StepForm({
               min={1}
               max={100}
               value={Math.round(step.speed * 100)}
-              onChange={(percent) => onChange({ ...step, speed: percent / 100 })}
+              onChange={(percent) => onChange({ ...step, speed: percent / 100 }, 'speed')}
             />
           )}
           <NumberField
@@ -93,7 +93,7 @@ export function StepForm({
             min={0}
             max={60}
             value={step.settle}
-            onChange={(settle) => onChange({ ...step, settle })}
+            onChange={(settle) => onChange({ ...step, settle }, 'settle')}
           />
         </div>
       );
@@ -107,7 +107,7 @@ export function StepForm({
             min={0}
             max={Math.round(widest * 10) / 10}
             value={Math.round(step.opening * widest * 10) / 10}
-            onChange={(mm) => onChange({ ...step, opening: Math.min(1, mm / widest) })}
+            onChange={(mm) => onChange({ ...step, opening: Math.min(1, mm / widest) }, 'opening')}
           />
         </div>
       );
@@ -121,7 +121,7 @@ export function StepForm({
             min={0}
             max={3600}
             value={step.seconds}
-            onChange={(seconds) => onChange({ ...step, seconds })}
+            onChange={(seconds) => onChange({ ...step, seconds }, 'seconds')}
           />
         </div>
       );
@@ -134,7 +134,7 @@ export function StepForm({
             min={1}
             max={1000}
             value={step.times}
-            onChange={(times) => onChange({ ...step, times: Math.round(times) })}
+            onChange={(times) => onChange({ ...step, times: Math.round(times) }, 'times')}
           />
         </div>
       );
@@ -145,7 +145,7 @@ export function StepForm({
             label="Remark"
             value={step.text}
             maxLength={500}
-            onChange={(event) => onChange({ ...step, text: event.target.value })}
+            onChange={(event) => onChange({ ...step, text: event.target.value }, 'text')}
           />
         </div>
       );

@@ -1,4 +1,5 @@
 import {
+  type Announcements,
   closestCenter,
   DndContext,
   type DragEndEvent,
@@ -7,89 +8,90 @@ import {
   useSensor,
   useSensors,
 } from '@dnd-kit/core';
-import {
-  SortableContext,
-  sortableKeyboardCoordinates,
-  useSortable,
-  verticalListSortingStrategy,
-} from '@dnd-kit/sortable';
-import { CSS } from '@dnd-kit/utilities';
-import type { Pose, Rehearsal } from '../../../shared/api/resources';
-import type { ArmModel } from '../../../shared/arm/model';
-import type { Step } from '../../../shared/sequence/steps';
-import { DragIcon, StepKindIcon, WarnIcon } from '../../components/icons';
-import {
-  copyOf,
-  type Draft,
-  insertAfter,
-  moveIn,
-  moveOut,
-  moveTo,
-  type Row,
-  remove,
-  replace,
-  rows,
-  shift,
-} from './edit';
-import { StepForm } from './StepForm';
-import { sentence } from './step-words';
+import { SortableContext, sortableKeyboardCoordinates, verticalListSortingStrategy } from '@dnd-kit/sortable';
+import { type KeyboardEvent, useEffect, useMemo, useRef, useState } from 'react';
+import type { Edit } from './editing';
+import { StepItem } from './StepItem';
+import { INDENT, type StepListProps } from './step-list-props';
+import { dropPlace, rowsOf, type StepRow } from './step-tree';
 
-interface Props {
-  draft: Draft;
-  poses: readonly Pose[];
-  model: ArmModel;
-  rehearsal: Rehearsal | null;
-  editable: boolean;
-  chosen: string | null;
-  /** The step a run does now or next. */
-  running: string | null;
-  onChoose: (id: string | null) => void;
-  onChange: (draft: Draft) => void;
-  newId: () => string;
-}
+/** Esc is Stop and nothing else, so a picked-up step is put back by Backspace. */
+const DRAG_KEYS = { start: ['Space', 'Enter'], end: ['Space', 'Enter'], cancel: ['Backspace'] };
+const INSTRUCTIONS =
+  'Press Space to pick the step up, the arrow keys to move it, Space to put it down, Backspace to put it back.';
 
-/** The steps, numbered; dragged, or moved by buttons and keys. */
-export function StepList(props: Props) {
-  const { draft, editable, chosen, onChoose, onChange, newId } = props;
-  const all = rows(draft.steps);
+/** The steps, numbered, repeats bracketed like a dimension; dragged, or moved by keys and buttons. */
+export function StepList(props: StepListProps) {
+  const { steps, selected, dispatch, editable } = props;
+  const list = useRef<HTMLOListElement>(null);
+  const [dragging, setDragging] = useState<string | null>(null);
+  const all = useMemo(() => rowsOf(steps), [steps]);
+  // What a dragged repeat holds travels with it and is not drawn meanwhile.
+  const drawn = useMemo(() => {
+    const held = all.find((row) => row.step.id === dragging)?.step;
+    const inside = held ? new Set(rowsOf([held]).map((row) => row.step.id)) : new Set<string>();
+    return all.filter((row) => row.step.id === dragging || !inside.has(row.step.id));
+  }, [all, dragging]);
   const sensors = useSensors(
     useSensor(PointerSensor, { activationConstraint: { distance: 6 } }),
-    useSensor(KeyboardSensor, { coordinateGetter: sortableKeyboardCoordinates }),
+    useSensor(KeyboardSensor, { coordinateGetter: sortableKeyboardCoordinates, keyboardCodes: DRAG_KEYS }),
   );
-  const set = (steps: Step[]) => onChange({ ...draft, steps });
-  const onDragEnd = ({ active, over }: DragEndEvent) => {
-    if (over) set(moveTo(draft.steps, String(active.id), String(over.id)));
+
+  // The step in hand is seen, and after a key has moved or deleted a row the keyboard stays with it.
+  const follow = useRef(false);
+  useEffect(() => {
+    if (selected === null) return;
+    const row = rowElement(list.current, selected);
+    row?.scrollIntoView?.({ block: 'nearest' });
+    if (follow.current) row?.querySelector<HTMLElement>('.sx')?.focus({ preventScroll: true });
+    follow.current = false;
+  }, [selected]);
+
+  const onDragEnd = ({ active, over, delta }: DragEndEvent) => {
+    setDragging(null);
+    const row = all.find(({ step }) => step.id === active.id);
+    if (!over || !row) return;
+    const depth = Math.max(0, row.depth + Math.round(delta.x / INDENT));
+    const place = dropPlace(steps, row.step.id, String(over.id), depth);
+    if (place) dispatch({ type: 'moveTo', id: row.step.id, place });
   };
-  const onKey = (event: React.KeyboardEvent, row: Row) => {
-    if (!editable || event.target !== event.currentTarget) return;
-    const { id } = row.step;
-    const act: Record<string, () => void> = {
-      'Alt+ArrowUp': () => set(shift(draft.steps, id, -1)),
-      'Alt+ArrowDown': () => set(shift(draft.steps, id, 1)),
-      'Alt+ArrowRight': () => set(moveIn(draft.steps, id)),
-      'Alt+ArrowLeft': () => set(moveOut(draft.steps, id)),
-      ['Delete']: () => set(remove(draft.steps, id)),
-      'Ctrl+d': () => set(insertAfter(draft.steps, id, copyOf(row.step, newId))),
-    };
-    const run =
-      act[`${event.ctrlKey || event.metaKey ? 'Ctrl+' : ''}${event.altKey ? 'Alt+' : ''}${event.key}`];
-    if (!run) return;
+
+  const onKey = (event: KeyboardEvent, row: StepRow) => {
+    const action = keyAction(event, row.step.id, editable);
+    if (action === 'above' || action === 'below') {
+      const at = all.indexOf(row) + (action === 'above' ? -1 : 1);
+      const next = all[at]?.step.id;
+      if (next === undefined) return;
+      rowElement(list.current, next)?.querySelector<HTMLElement>('.sx')?.focus();
+    } else if (action) {
+      follow.current = action.type === 'remove' || action.type === 'duplicate';
+      dispatch(action);
+    } else return;
     event.preventDefault();
-    run();
   };
+
   return (
-    <DndContext sensors={sensors} collisionDetection={closestCenter} onDragEnd={onDragEnd}>
-      <SortableContext items={all.map((row) => row.step.id)} strategy={verticalListSortingStrategy}>
-        <ol className="list" aria-label="Steps">
-          {all.map((row) => (
-            <StepRow
+    <DndContext
+      sensors={sensors}
+      collisionDetection={closestCenter}
+      accessibility={{
+        announcements: announcementsFor(all),
+        screenReaderInstructions: { draggable: INSTRUCTIONS },
+      }}
+      onDragStart={({ active }) => setDragging(String(active.id))}
+      onDragCancel={() => setDragging(null)}
+      onDragEnd={onDragEnd}
+    >
+      <SortableContext items={drawn.map((row) => row.step.id)} strategy={verticalListSortingStrategy}>
+        <ol className="list" aria-label="Steps" ref={list}>
+          {drawn.map((row) => (
+            <StepItem
               key={row.step.id}
               row={row}
+              ends={endsAfter(all, row)}
               {...props}
-              isChosen={chosen === row.step.id}
-              onToggle={() => onChoose(chosen === row.step.id ? null : row.step.id)}
+              isSelected={selected === row.step.id}
               onKeyDown={(event) => onKey(event, row)}
-              set={set}
             />
           ))}
         </ol>
@@ -98,122 +100,38 @@ export function StepList(props: Props) {
   );
 }
 
-function StepRow({
-  row,
-  draft,
-  poses,
-  model,
-  rehearsal,
-  editable,
-  running,
-  isChosen,
-  onToggle,
-  onKeyDown,
-  set,
-  newId,
-}: Props & {
-  row: Row;
-  isChosen: boolean;
-  onToggle: () => void;
-  onKeyDown: (event: React.KeyboardEvent) => void;
-  set: (steps: Step[]) => void;
-}) {
-  const { step, path, depth } = row;
-  const { attributes, listeners, setNodeRef, setActivatorNodeRef, transform, transition } = useSortable({
-    id: step.id,
-    disabled: !editable,
-  });
-  const { lead, about, detail } = sentence(step, poses, model);
-  const problem = rehearsal?.problems.find((p) => p.stepId === step.id);
-  const seconds = rehearsal?.stepDurations[step.id];
-  return (
-    <li
-      ref={setNodeRef}
-      style={{ transform: CSS.Translate.toString(transform), transition, paddingLeft: depth * 34 }}
-      className={`st ${depth > 0 ? 'nested' : ''} ${step.kind === 'again' ? 'repeat' : ''} ${isChosen ? 'here' : ''} ${running === step.id ? 'next' : ''}`}
-      aria-current={running === step.id ? 'step' : undefined}
-    >
-      <span className="no">
-        {editable && (
-          <button
-            type="button"
-            ref={setActivatorNodeRef}
-            className="grab"
-            {...attributes}
-            {...listeners}
-            aria-label={`Move step ${path}`}
-          >
-            <DragIcon />
-          </button>
-        )}
-        {path}
-      </span>
-      <span className="gl">
-        <StepKindIcon kind={step.kind} />
-      </span>
-      <button
-        type="button"
-        className="sx"
-        aria-expanded={isChosen}
-        aria-label={`Step ${path}: ${lead} ${about} ${detail}`}
-        onClick={onToggle}
-        onKeyDown={onKeyDown}
-      >
-        {lead} <b>{about}</b>
-        <em>{detail}</em>
-      </button>
-      <span className="tags">
-        {running === step.id && <span className="from">now</span>}
-        {problem && (
-          <span className="wn" title={problem.message}>
-            <WarnIcon />
-            {problem.severity === 'blocks' ? 'blocks' : 'tight'}
-          </span>
-        )}
-      </span>
-      <span className="tm">
-        {step.kind === 'again' ? `× ${step.times}` : seconds !== undefined ? `${seconds.toFixed(1)} s` : ''}
-      </span>
-      {isChosen && editable && (
-        <div className="stepedit">
-          <StepForm
-            key={step.id}
-            step={step}
-            poses={poses}
-            model={model}
-            onChange={(next) => set(replace(draft.steps, next))}
-          />
-          <div className="line">
-            <button type="button" className="btn sm" onClick={() => set(shift(draft.steps, step.id, -1))}>
-              Up
-            </button>
-            <button type="button" className="btn sm" onClick={() => set(shift(draft.steps, step.id, 1))}>
-              Down
-            </button>
-            <button type="button" className="btn sm" onClick={() => set(moveIn(draft.steps, step.id))}>
-              Into the repeat above
-            </button>
-            <button
-              type="button"
-              className="btn sm"
-              disabled={depth === 0}
-              onClick={() => set(moveOut(draft.steps, step.id))}
-            >
-              Out of its repeat
-            </button>
-            <button
-              type="button"
-              className="btn sm"
-              onClick={() => set(insertAfter(draft.steps, step.id, copyOf(step, newId)))}
-            >
-              Copy
-            </button>
-            <button type="button" className="btn sm" onClick={() => set(remove(draft.steps, step.id))}>
-              Delete
-            </button>
-          </div>
-        </div>
-      )}
-    </li>
-  );
+const rowElement = (list: HTMLElement | null, id: string): HTMLElement | null =>
+  [...(list?.querySelectorAll<HTMLElement>('[data-step]') ?? [])].find((row) => row.dataset.step === id) ??
+  null;
+
+/** How many brackets end with this row: those of the repeats it is the very last row of. */
+function endsAfter(all: readonly StepRow[], row: StepRow): number {
+  const next = all[all.indexOf(row) + 1];
+  return Math.max(0, row.depth - (next?.depth ?? 0));
+}
+
+function keyAction(event: KeyboardEvent, id: string, editable: boolean): Edit | 'above' | 'below' | null {
+  const { key, altKey } = event;
+  if (!altKey && key === 'ArrowUp') return 'above';
+  if (!altKey && key === 'ArrowDown') return 'below';
+  if (!editable) return null;
+  if (altKey && key === 'ArrowUp') return { type: 'moveUp', id };
+  if (altKey && key === 'ArrowDown') return { type: 'moveDown', id };
+  if (altKey && key === 'ArrowRight') return { type: 'moveIn', id };
+  if (altKey && key === 'ArrowLeft') return { type: 'moveOut', id };
+  if (key === 'Delete') return { type: 'remove', id };
+  if ((event.ctrlKey || event.metaKey) && key.toLowerCase() === 'd') return { type: 'duplicate', id };
+  return null;
+}
+
+function announcementsFor(all: readonly StepRow[]): Announcements {
+  const name = (id: string | number) => `step ${all.find((row) => row.step.id === id)?.path ?? ''}`;
+  return {
+    onDragStart: ({ active }) => `Picked up ${name(active.id)}.`,
+    onDragOver: ({ active, over }) =>
+      over ? `${name(active.id)} is over ${name(over.id)}.` : `${name(active.id)} is over no step.`,
+    onDragEnd: ({ active, over }) =>
+      over ? `${name(active.id)} was put at ${name(over.id)}.` : `${name(active.id)} was put back.`,
+    onDragCancel: ({ active }) => `${name(active.id)} was put back.`,
+  };
 }

@@ -2,6 +2,7 @@ import type { Step } from '../../../shared/sequence/steps';
 import {
   copyOf,
   findRow,
+  freshIds,
   insertStep,
   moveBy,
   moveIn,
@@ -30,9 +31,15 @@ export interface Editing {
   mergeKey: string | null;
 }
 
+type WithoutId<S> = S extends Step ? Omit<S, 'id'> : never;
+/** A step that has no name yet. */
+export type NewStep = WithoutId<Step>;
+
 export type Edit =
   /** Puts a step after the one in hand (into it, if that is an empty "again"), or at `place`. */
   | { type: 'insert'; step: Step; place?: Place }
+  /** The same for new steps, which get their names here; all are undone together. */
+  | { type: 'insertAll'; steps: readonly NewStep[] }
   | { type: 'change'; step: Step; mergeKey?: string }
   | { type: 'label'; name?: string; note?: string }
   | { type: 'remove'; id: string }
@@ -41,6 +48,8 @@ export type Edit =
   | { type: 'moveTo'; id: string; place: Place }
   | { type: 'select'; id: string | null }
   | { type: 'undo' | 'redo' }
+  /** Another version's content takes over; it can be undone. */
+  | { type: 'replace'; draft: Draft }
   /** Starts anew from what is saved (or from a draft that was kept). */
   | { type: 'reset'; draft: Draft };
 
@@ -76,6 +85,16 @@ export function edit(editing: Editing, action: Edit): Editing {
         insertStep(steps, action.step, action.place ?? placeAfter(steps, selected)),
         action.step.id,
       );
+    case 'insertAll': {
+      const ids = freshIds(steps, action.steps.length);
+      const added = action.steps.map((step, i) => ({ ...step, id: ids[i]! }) as Step);
+      const { parentId, index } = placeAfter(steps, selected);
+      const next = added.reduce<Step[]>(
+        (list, step, i) => insertStep(list, step, { parentId, index: index + i }),
+        [...steps],
+      );
+      return changed(editing, next, ids.at(-1) ?? selected);
+    }
     case 'change':
       return changed(editing, replaceStep(steps, action.step), action.step.id, action.mergeKey ?? null);
     case 'label': {
@@ -110,6 +129,8 @@ export function edit(editing: Editing, action: Edit): Editing {
       return undo(editing);
     case 'redo':
       return redo(editing);
+    case 'replace':
+      return withDraft(editing, action.draft, null, null);
     case 'reset':
       return startEditing(action.draft);
   }

@@ -38,10 +38,14 @@ export function leftAt(
   const byId = new Map(poses.map((pose) => [pose.id, pose]));
   let q: readonly number[] | null = null;
   let opening: number | null = null;
-  for (const { step } of rowsOf(steps)) {
+  const rows = rowsOf(steps);
+  // After a repeat means after all that it holds.
+  const after = rows.find((row) => row.step.id === afterId);
+  const last = after ? rowsOf([after.step]).at(-1)?.step.id : null;
+  for (const { step } of rows) {
     if (step.kind === 'goTo') q = byId.get(step.poseId)?.q ?? null;
     else if (step.kind === 'grip') opening = step.opening;
-    if (step.id === afterId) break;
+    if (step.id === last) break;
   }
   return { q, opening };
 }

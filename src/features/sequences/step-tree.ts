@@ -165,7 +165,7 @@ export function dropPlace(steps: readonly Step[], id: string, overId: string, de
   const rest = rows.filter((row) => row.step.id !== id);
   if (from < 0 || to < 0) return null;
   // Neighbours once the row sits at index `to`.
-  const above = rest[to];
+  const above = rest[to - 1];
   const below = rest[to];
   const deepest = above ? above.depth + (above.step.kind === 'again' ? 1 : 0) : 0;
   const shallowest = below?.depth ?? 0;

@@ -5,7 +5,7 @@ import { useSession, useSignOut } from '../../api/session';
 import { ChevronDown } from '../../components/icons';
 import { Menu, MenuButton, MenuItem, MenuLabel, MenuList } from '../../components/Menu';
 import { currentTheme, toggleTheme } from '../../components/theme';
-import { toast } from './toast';
+import { toast } from '../../components/toast';
 
 export function ThemeButton() {
   const [theme, setTheme] = useState(currentTheme);

@@ -2,10 +2,10 @@ import { useState } from 'react';
 import { may } from '../../../shared/team/roles';
 import { usePeople } from '../../api/team';
 import { Menu, MenuButton, MenuItem, MenuList } from '../../components/Menu';
+import { toast } from '../../components/toast';
 import { clock } from '../../components/when';
 import { sendCommand } from '../../live/connection';
 import { useArmState, useHello } from '../../live/use-live';
-import { toast } from './toast';
 
 /** Who has control, and the ways it changes hands. */
 export function ControlCell() {

@@ -2,20 +2,12 @@ import { useEffect, useRef, useState } from 'react';
 import type { ArmModel } from '../../../shared/arm/model';
 import { Dialog } from '../../components/Dialog';
 import { MotorsOffIcon } from '../../components/icons';
+import { namesOf } from '../../components/joint-names';
 import { Message } from '../../components/Message';
 import { sendCommand } from '../../live/connection';
 
 /** How long the button has to be held, ms. */
 const HOLD_MS = 1000;
-
-export function namesOf(model: ArmModel, joints: readonly number[]): string {
-  const names = joints.map((i, k) => {
-    const name = model.joints[i]?.name ?? `joint ${i + 1}`;
-    return k === 0 ? name : name.toLowerCase();
-  });
-  if (names.length < 2) return names[0] ?? '';
-  return `${names.slice(0, -1).join(', ')} and ${names.at(-1)}`;
-}
 
 /** Says which joints would drop before anything happens, then needs a one-second hold. */
 export function MotorsOffDialog({

@@ -3,13 +3,14 @@ import type { ArmModel } from '../../../shared/arm/model';
 import { worstTrust } from '../../../shared/arm/trust';
 import { may } from '../../../shared/team/roles';
 import { CeilingIcon, LinkIcon, MotorsIcon, MotorsOffIcon, TrustIcon } from '../../components/icons';
+import { namesOf } from '../../components/joint-names';
 import { StopRegion } from '../../components/StopRegion';
 import { clock } from '../../components/when';
 import { pressStop } from '../../live/connection';
 import { endHold } from '../../live/hold';
 import { useArmState, useConnection, useHello, useStopState, useTelemetry } from '../../live/use-live';
 import { ControlCell } from './ControlCell';
-import { MotorsOffDialog, namesOf } from './MotorsOffDialog';
+import { MotorsOffDialog } from './MotorsOffDialog';
 
 /** The title block of the sheet: always these cells in this order, then Stop. */
 export function StatusStrip({ model }: { model: ArmModel }) {

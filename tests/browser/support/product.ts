@@ -82,10 +82,7 @@ interface Fixtures {
   product: Product;
   complaints: string[];
   /** A page of a signed-in person, in a browser of its own. */
-  as: (
-    role: Role,
-    options?: Parameters<BrowserContext['browser']>[0] & { viewport?: { width: number; height: number } },
-  ) => Promise<Page>;
+  as: (role: Role) => Promise<Page>;
 }
 
 /** Every test gets a product of its own and fails on any console error or warning, in page and server log. */
@@ -105,10 +102,9 @@ export const test = base.extend<Fixtures>({
   },
   as: async ({ browser, product, complaints }, use) => {
     const contexts: BrowserContext[] = [];
-    await use(async (role, options) => {
+    await use(async (role) => {
       const context = await browser.newContext({
         baseURL: product.url,
-        viewport: options?.viewport ?? { width: 1440, height: 900 },
       });
       contexts.push(context);
       const page = await context.newPage();
