@@ -1,4 +1,7 @@
-import { afterEach, beforeEach, describe, expect, it } from 'vitest';
+import { cpSync, mkdtempSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { seedDemo } from '../../server/demo';
 import { CEILINGS } from '../../shared/arm/trust';
 import { type Browser, type PlayedServer, startPlayedServer } from '../support/played-server';
@@ -8,13 +11,27 @@ let teacher: Browser;
 let heronId: string;
 const at = (path = '') => `/arms/${heronId}/sequences${path}`;
 
+/** The demo workshop, seeded once (its passwords are slow to hash) and copied for each test. */
+const seeded = mkdtempSync(join(tmpdir(), 'elbowroom-seeded-'));
+let folder: string;
+beforeAll(async () => {
+  const seeding = await startPlayedServer({ folder: seeded });
+  await seedDemo(seeding.context, seeded);
+  await seeding.close();
+});
+afterAll(() => rmSync(seeded, { recursive: true, force: true }));
+
 beforeEach(async () => {
-  server = await startPlayedServer();
-  await seedDemo(server.context, server.folder);
+  folder = mkdtempSync(join(tmpdir(), 'elbowroom-approval-'));
+  cpSync(seeded, folder, { recursive: true });
+  server = await startPlayedServer({ folder });
   teacher = server.as(server.context.people.list().find((p) => p.role === 'teacher')!);
   heronId = server.context.arms.list().find((arm) => arm.name === 'Heron')!.id;
 });
-afterEach(() => server.close());
+afterEach(async () => {
+  await server.close();
+  rmSync(folder, { recursive: true, force: true });
+});
 
 const weigh = async () => (await teacher.get(at())).body[0];
 

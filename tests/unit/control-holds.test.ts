@@ -20,7 +20,7 @@ import {
 } from '../support/ready-arm';
 import { actor, Rig, TICK_S } from '../support/rig';
 
-/** PRODUCT.md, rule of motion 2: a hold dies by itself 250 ms after its last keep-alive. */
+/** Rule of motion 2: a hold dies by itself 250 ms after its last keep-alive. */
 const EXPIRY_TICKS = 25;
 
 describe('a hold', () => {
@@ -52,7 +52,7 @@ describe('a hold', () => {
     const shadow = rig.telemetry.stopAt;
     letGo(rig);
     rig.settle();
-    // DECISIONS.md: equal within 0.2°; nothing but rounding separates them here.
+    // Equal within 0.2°; nothing but rounding separates them here.
     for (const [i, q] of rig.telemetry.q.entries()) expect(q).toBeCloseTo(shadow[i]!, 9);
   });
 

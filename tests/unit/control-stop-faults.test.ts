@@ -38,7 +38,7 @@ describe('stop', () => {
       rig.settle();
       rig.tick(2);
       expect(offBy(rig, stopAt)).toBeLessThan(1e-9);
-      // DECISIONS.md: within 0.2° of where the arm really rests.
+      // Within 0.2° of where the arm really rests.
       for (const [i, truth] of rig.telemetry.truth!.entries())
         expect(Math.abs(truth - stopAt[i]!)).toBeLessThan(deg(0.2));
     },

@@ -88,7 +88,7 @@ describe('a joint without power', () => {
 });
 
 describe('torque used in words', () => {
-  // PRODUCT.md: under 60 % roomy, to 80 % fair, to 100 % tight, above that none left.
+  // Under 60 % roomy, to 80 % fair, to 100 % tight, above that none left.
   it.each([
     [0, 'roomy'],
     [0.599, 'roomy'],

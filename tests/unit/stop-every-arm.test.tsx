@@ -72,7 +72,7 @@ describe('Stop on a workshop page', () => {
     expect(stops(asked)).toHaveLength(1);
   });
 
-  // SAFETY.md MU5: after 300 ms with no acknowledgement the person is sent to the supply.
+  // After 300 ms with no acknowledgement the person is sent to the supply.
   it('asks for the supply switch when nobody answers within 300 ms', async () => {
     const { answer } = laterAnswer();
     await workshop(() => answer);

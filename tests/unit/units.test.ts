@@ -87,7 +87,7 @@ describe('angles and lengths', () => {
       expect(fromShown(type, toShown(type, 0.335))).toBeCloseTo(0.335, 15);
   });
 
-  // LOOK.md: true minus U+2212, a space before the unit except °.
+  // True minus U+2212, a space before the unit except °.
   it.each([
     ['revolute', 0.335, '19.2°'],
     ['revolute', -0.335, '−19.2°'],
