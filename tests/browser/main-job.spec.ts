@@ -85,7 +85,7 @@ test('sign in, bring up, jog, teach, record, rehearse, hold the first cycle, run
 
   // Hold through the first cycle, then three in all.
   await page.getByLabel('Cycles').fill('4');
-  await page.getByRole('button', { name: /^Run first cycle held/ }).click();
+  await page.getByRole('button', { name: /^Run\s*first cycle held/ }).click();
   await holdUntil(
     page,
     page.locator('.run .go', { hasText: /Hold to run|let go to stop/ }),
@@ -94,7 +94,7 @@ test('sign in, bring up, jog, teach, record, rehearse, hold the first cycle, run
   );
   await page.getByRole('button', { name: /Resume/ }).click();
   await expect(page.getByRole('status').filter({ hasText: 'Moves in' })).toBeVisible();
-  await expect(page.getByRole('button', { name: /^Run after 3 s/ })).toBeVisible({ timeout: 120_000 });
+  await expect(page.getByRole('button', { name: /^Run\s*after 3 s/ })).toBeVisible({ timeout: 120_000 });
 
   // History: every cycle timed.
   await page.getByRole('link', { name: 'Runs', exact: true }).click();

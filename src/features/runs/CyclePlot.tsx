@@ -1,55 +1,78 @@
 import 'uplot/dist/uPlot.min.css';
-import { useEffect, useRef } from 'react';
+import { useEffect, useRef, useState } from 'react';
 import uPlot from 'uplot';
 import type { RunCycle } from '../../../shared/api/resources';
+import { onTheme } from '../../components/theme';
 
-/** Every cycle's time, in order. */
-export default function CyclePlot({ cycles }: { cycles: readonly RunCycle[] }) {
+const HEIGHT = 180;
+
+/** A bar for every cycle; held ones are drawn hollow. */
+export default function CyclePlot({
+  cycles,
+  label,
+}: {
+  cycles: readonly Pick<RunCycle, 'cycle' | 'seconds' | 'held'>[];
+  /** The plot in words. */
+  label: string;
+}) {
   const box = useRef<HTMLDivElement>(null);
+  const [theme, setTheme] = useState(0);
+  useEffect(() => onTheme(() => setTheme((n) => n + 1)), []);
+  // biome-ignore lint/correctness/useExhaustiveDependencies: the theme changes the inks that are read below
   useEffect(() => {
     const at = box.current;
     if (!at || cycles.length === 0) return;
-    const style = getComputedStyle(document.documentElement);
-    const ink = style.getPropertyValue('--er-ink').trim();
-    const grid = style.getPropertyValue('--er-grid').trim();
-    const axis = {
-      stroke: ink,
-      grid: { stroke: grid, width: 1 },
-      ticks: { stroke: grid },
-      font: '12px "JetBrains Mono"',
-    };
     const plot = new uPlot(
-      {
-        width: Math.max(220, at.clientWidth),
-        height: 160,
-        cursor: { drag: { x: false, y: false } },
-        scales: { x: { time: false }, y: { range: (_u, _min, max) => [0, max * 1.15] } },
-        axes: [
-          { ...axis, incrs: [1, 2, 5, 10, 20, 50, 100, 200, 500, 1000] },
-          { ...axis, values: (_u, splits) => splits.map((s) => `${s} s`) },
-        ],
-        series: [
-          { label: 'cycle' },
-          {
-            label: 'time',
-            stroke: ink,
-            width: 1.6,
-            points: { show: true, size: 7, fill: ink },
-            value: (_u, v) => (v === null ? '–' : `${v.toFixed(2)} s`),
-          },
-        ],
-      },
-      [cycles.map((c) => c.cycle), cycles.map((c) => c.seconds)],
+      options(at),
+      [
+        cycles.map((c) => c.cycle),
+        cycles.map((c) => (c.held ? null : c.seconds)),
+        cycles.map((c) => (c.held ? c.seconds : null)),
+      ],
       at,
     );
-    const resize = new ResizeObserver(() =>
-      plot.setSize({ width: Math.max(220, at.clientWidth), height: 160 }),
-    );
+    const resize = new ResizeObserver(() => plot.setSize({ width: widthOf(at), height: HEIGHT }));
     resize.observe(at);
     return () => {
       resize.disconnect();
       plot.destroy();
     };
-  }, [cycles]);
-  return <div ref={box} className="cycleplot" role="img" aria-label="Time of every cycle" />;
+  }, [cycles, theme]);
+  return <div ref={box} className="cycleplot" role="img" aria-label={label} />;
+}
+
+const widthOf = (at: HTMLElement) => Math.max(220, at.clientWidth);
+
+function options(at: HTMLElement): uPlot.Options {
+  const style = getComputedStyle(document.documentElement);
+  const inkOf = (name: string) => style.getPropertyValue(name).trim();
+  const ink = inkOf('--er-ink');
+  const axis = {
+    stroke: inkOf('--er-ink-2'),
+    grid: { stroke: inkOf('--er-grid'), width: 1 },
+    ticks: { stroke: inkOf('--er-edge'), width: 1, size: 5 },
+    font: '12px "JetBrains Mono"',
+  };
+  const bars = uPlot.paths.bars?.({ size: [0.7, 34] });
+  const series = { paths: bars, points: { show: false }, stroke: ink, width: 1.5 };
+  return {
+    width: widthOf(at),
+    height: HEIGHT,
+    legend: { show: false },
+    cursor: { show: false },
+    scales: {
+      x: { time: false, range: (_plot, low, high) => [low - 0.6, high + 0.6] },
+      y: { range: (_plot, _low, high) => [0, Math.max(1, high) * 1.12] },
+    },
+    axes: [
+      {
+        ...axis,
+        grid: { show: false },
+        incrs: [1, 2, 5, 10, 20, 50, 100, 200, 500, 1000, 2000, 5000],
+        values: (_plot, splits) => splits.map((s) => (Number.isInteger(s) ? String(s) : '')),
+      },
+      { ...axis, size: 54, values: (_plot, splits) => splits.map((s) => `${s} s`) },
+    ],
+    series: [{}, { ...series, fill: ink }, series],
+  };
 }

@@ -1,0 +1,173 @@
+import { BackSide, Color, ShaderMaterial, Vector2 } from 'three';
+import { LineMaterial } from 'three/addons/lines/LineMaterial.js';
+import type { Inks } from '../inks';
+
+/** Line widths of the sheet, CSS px. */
+const OUTLINE_PX = 1.3;
+const EDGE_PX = 1.4;
+
+/** One set for the whole scene, so that a change of colours or zoom is made in one place. */
+export interface InkMaterials {
+  paper: ShaderMaterial;
+  known: LinePair;
+  /** Dotted: where it was last seen. */
+  unknown: LinePair;
+  thin: ShaderMaterial;
+  centre: ShaderMaterial;
+  all(): (ShaderMaterial | LineMaterial)[];
+}
+export interface LinePair {
+  outline: ShaderMaterial;
+  edge: LineMaterial;
+}
+
+// Up is card, the side away from the light is shaded, the rest is the sheet: as the boxes of the drawing sheet.
+const PAPER_VERTEX = /* glsl */ `
+  attribute float wash;
+  varying float vWash; varying vec3 vWorld; varying vec3 vView;
+  void main() {
+    vWash = wash;
+    vWorld = normalize(mat3(modelMatrix) * normal);
+    vView = normalize(normalMatrix * normal);
+    gl_Position = projectionMatrix * modelViewMatrix * vec4(position, 1.0);
+  }`;
+const PAPER_FRAGMENT = /* glsl */ `
+  uniform vec3 sheet; uniform vec3 card; uniform vec3 shade; uniform vec3 dark;
+  varying float vWash; varying vec3 vWorld; varying vec3 vView;
+  void main() {
+    vec3 colour = sheet;
+    if (vWash > 1.5) colour = dark;
+    else if (vWorld.z > 0.85) colour = card;
+    else if (vWash > 0.5 && vView.x < -0.3) colour = shade;
+    gl_FragColor = vec4(colour, 1.0);
+    #include <colorspace_fragment>
+  }`;
+
+// The solid grown by a few pixels and seen from behind: what stands out around it is its outline.
+const OUTLINE_VERTEX = /* glsl */ `
+  attribute vec3 outward;
+  uniform vec2 half; uniform float width;
+  void main() {
+    gl_Position = projectionMatrix * modelViewMatrix * vec4(position, 1.0);
+    vec2 way = (normalMatrix * outward).xy;
+    float size = length(way);
+    if (size > 1e-4) gl_Position.xy += way / size * width / half * gl_Position.w;
+  }`;
+const OUTLINE_FRAGMENT = /* glsl */ `
+  uniform vec3 ink; uniform float dotted;
+  void main() {
+    // Unequal pitches, so that no line of a usual slope falls between the dots.
+    if (dotted > 0.0 && sin(gl_FragCoord.x * dotted) * sin(gl_FragCoord.y * dotted * 0.83) < 0.0) discard;
+    gl_FragColor = vec4(ink, 1.0);
+    #include <colorspace_fragment>
+  }`;
+
+// A hairline lifted towards the eye: a tube's centre line is drawn on its near side.
+const MARK_VERTEX = /* glsl */ `
+  attribute float along; attribute float lift;
+  varying float vAlong;
+  void main() {
+    vAlong = along;
+    vec4 view = modelViewMatrix * vec4(position, 1.0);
+    view.z += lift;
+    gl_Position = projectionMatrix * view;
+  }`;
+const MARK_FRAGMENT = /* glsl */ `
+  uniform vec3 ink; uniform float zoom; uniform float dashed;
+  varying float vAlong;
+  void main() {
+    float at = mod(vAlong * zoom, 18.0);
+    if (dashed > 0.5 && ((at > 10.0 && at < 13.0) || at > 15.0)) discard;
+    gl_FragColor = vec4(ink, 1.0);
+    #include <colorspace_fragment>
+  }`;
+
+function linePair(dotted: boolean, shared: { half: { value: Vector2 } }): LinePair {
+  const outline = new ShaderMaterial({
+    vertexShader: OUTLINE_VERTEX,
+    fragmentShader: OUTLINE_FRAGMENT,
+    uniforms: {
+      ink: { value: new Color() },
+      dotted: { value: dotted ? 1 : 0 },
+      width: { value: OUTLINE_PX },
+      half: shared.half,
+    },
+    side: BackSide,
+  });
+  const edge = new LineMaterial({ linewidth: EDGE_PX, dashed: dotted, dashSize: 2.6, gapSize: 2.6 });
+  return { outline, edge };
+}
+
+export function makeInkMaterials(): InkMaterials {
+  const half = { value: new Vector2(1, 1) };
+  const zoom = { value: 1 };
+  const paper = new ShaderMaterial({
+    vertexShader: PAPER_VERTEX,
+    fragmentShader: PAPER_FRAGMENT,
+    uniforms: {
+      sheet: { value: new Color() },
+      card: { value: new Color() },
+      shade: { value: new Color() },
+      dark: { value: new Color() },
+    },
+    // Ink lies on the paper: edges of a face win over the face.
+    polygonOffset: true,
+    polygonOffsetFactor: 1.5,
+    polygonOffsetUnits: 2,
+  });
+  const mark = (dashed: number) =>
+    new ShaderMaterial({
+      vertexShader: MARK_VERTEX,
+      fragmentShader: MARK_FRAGMENT,
+      uniforms: { ink: { value: new Color() }, zoom, dashed: { value: dashed } },
+    });
+  const materials = {
+    paper,
+    known: linePair(false, { half }),
+    unknown: linePair(true, { half }),
+    thin: mark(0),
+    centre: mark(1),
+  };
+  const all = () => [
+    materials.paper,
+    materials.known.outline,
+    materials.known.edge,
+    materials.unknown.outline,
+    materials.unknown.edge,
+    materials.thin,
+    materials.centre,
+  ];
+  return { ...materials, all };
+}
+
+export function colourMaterials(materials: InkMaterials, inks: Inks): void {
+  const paper = materials.paper.uniforms as Record<string, { value: Color }>;
+  paper.sheet!.value.set(inks.paper);
+  paper.card!.value.set(inks.card);
+  paper.shade!.value.set(inks.shade);
+  paper.dark!.value.set(inks.ink2);
+  (materials.known.outline.uniforms.ink!.value as Color).set(inks.ink);
+  materials.known.edge.color.set(inks.ink);
+  (materials.unknown.outline.uniforms.ink!.value as Color).set(inks.ink2);
+  materials.unknown.edge.color.set(inks.ink2);
+  (materials.thin.uniforms.ink!.value as Color).set(inks.ink);
+  (materials.centre.uniforms.ink!.value as Color).set(inks.ink2);
+}
+
+/**
+ * Lines keep their width in px whatever the zoom.
+ *
+ * @param zoom - CSS px per metre; @param width @param height - of the canvas, CSS px; @param pixelRatio - device px per CSS px
+ */
+export function scaleMaterials(
+  materials: InkMaterials,
+  zoom: number,
+  width: number,
+  height: number,
+  pixelRatio: number,
+): void {
+  (materials.known.outline.uniforms.half!.value as Vector2).set(width / 2, height / 2);
+  materials.thin.uniforms.zoom!.value = zoom;
+  materials.unknown.edge.dashScale = zoom;
+  materials.unknown.outline.uniforms.dotted!.value = 1.05 / pixelRatio;
+}
