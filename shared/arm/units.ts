@@ -7,8 +7,6 @@ export const radToDeg = (rad: number): number => (rad * 180) / Math.PI;
 export const mmToM = (mm: number): number => mm / 1000;
 export const mToMm = (m: number): number => m * 1000;
 
-/** Standard gravity, m/s²: CGPM 1901, exact. */
-export const STANDARD_GRAVITY = 9.80665;
 /** 1 kgf·cm in N·m, exact by the definition of standard gravity. */
 export const NEWTON_METRE_PER_KGF_CM = 0.0980665;
 /** NIST SP 811: ounce-force inch 7.061552 E−03 N·m. */

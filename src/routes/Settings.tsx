@@ -2,6 +2,7 @@ import { may } from '../../shared/team/roles';
 import { useSession } from '../api/session';
 import { useTitle } from '../components/use-title';
 import { ArmSettings } from '../features/arms/ArmSettings';
+import { LetterKeys } from '../features/team/LetterKeys';
 import { WorkshopName } from '../features/team/WorkshopName';
 import { YouSection } from '../features/team/YouSection';
 
@@ -15,6 +16,7 @@ export function Component() {
       <div className="paper settings">
         <h1 className="title">Settings</h1>
         <YouSection you={you} />
+        <LetterKeys />
         {may(you.role, 'workshop.settings') && <WorkshopName name={workshop} />}
         {may(you.role, 'arm.unattended') ? (
           <ArmSettings />
