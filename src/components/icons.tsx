@@ -64,12 +64,6 @@ export const MovingIcon = () => (
     <path d="M3 4.5 8 10l-5 5.5M8 4.5 13 10l-5 5.5M13 4.5 18 10l-5 5.5" strokeWidth="2.2" />
   </Icon>
 );
-export const StandingIcon = () => (
-  <Icon>
-    <path d="M6 4H3.5v12H6M14 4h2.5v12H14" strokeWidth="2" />
-    <rect x="7" y="7" width="6" height="6" {...solid} />
-  </Icon>
-);
 const MOTORS: Record<string, ReactNode> = {
   resting: (
     <>

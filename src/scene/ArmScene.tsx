@@ -1,107 +1,138 @@
-import { Canvas, useFrame, useThree } from '@react-three/fiber';
-import { useEffect, useRef, useState } from 'react';
+import './scene.css';
+import { Canvas } from '@react-three/fiber';
+import { useEffect, useMemo, useRef, useState } from 'react';
 import type { ArmModel } from '../../shared/arm/model';
-import { Arm } from './Arm';
-import { Bench, Floor } from './Bench';
-import { CameraRig } from './CameraRig';
+import { Arm } from './arm/Arm';
+import { GroundShadow } from './arm/GroundShadow';
+import { Bench } from './bench/Bench';
+import { Floor } from './bench/Floor';
+import { DrawingBoundary } from './DrawingBoundary';
+import { DrawOnSamples } from './DrawOnSamples';
+import { InkMaterialsContext } from './ink/ink-context';
+import { colourMaterials, makeInkMaterials } from './ink/materials';
 import { InksContext, useReadInks } from './inks';
+import { CameraRig } from './sheet/CameraRig';
+import { DriveSheet } from './sheet/DriveSheet';
+import { noSheetElements, SheetLines } from './sheet/SheetLines';
 import type { SceneSource } from './source';
-import { ChainLine, ToolTrace } from './Traces';
 import type { View } from './views';
+import './quiet-three';
 
-/** Between two pictures at least this long, ms, and at least this many times as long as the last one took. */
-const LEAST_PAUSE_MS = 30;
-const PAUSE_PER_DRAWING = 3;
-
-/**
- * Draws when there is something new to draw, and not otherwise. A slow machine draws less often: the picture
- * must never keep the page from its holds.
- */
-function DrawOnSamples({ source }: { source: SceneSource }) {
-  const invalidate = useThree((three) => three.invalidate);
-  const gl = useThree((three) => three.gl);
-  const drawing = useRef({ startedAtMs: 0, tookMs: 0, endedAtMs: 0, asked: false });
-  useFrame(() => {
-    const now = drawing.current;
-    now.startedAtMs = performance.now();
-    now.asked = false;
-    // The picture is drawn right after this; a task later its cost is known.
-    setTimeout(() => {
-      now.endedAtMs = performance.now();
-      now.tookMs = now.endedAtMs - now.startedAtMs;
-      gl.domElement.dataset.frames = String(gl.info.render.frame);
-    });
-  });
-  useEffect(
-    () =>
-      source.subscribe(() => {
-        const now = drawing.current;
-        const pauseMs = Math.max(LEAST_PAUSE_MS, PAUSE_PER_DRAWING * now.tookMs);
-        if (now.asked || performance.now() - now.endedAtMs < pauseMs) return;
-        now.asked = true;
-        invalidate();
-      }),
-    [source, invalidate],
-  );
-  return null;
+interface Props {
+  model: ArmModel;
+  /** Null leaves the eye where a drag has put it. */
+  view: View | null;
+  source: SceneSource;
+  /** False draws all past the base dotted: as last seen. */
+  known: boolean;
+  /** Outline where the built-in arm really is. */
+  showTruth?: boolean;
+  /** A drag has turned the view. */
+  onTurned?: () => void;
+  antialias?: boolean;
 }
 
 /** The arm as a drawing in three dimensions. Numbers and Stop never depend on it. */
-export default function ArmScene({
+export default function ArmScene(props: Props) {
+  // A lost picture is drawn again on a fresh canvas.
+  const [attempt, setAttempt] = useState(0);
+  const [lost, setLost] = useState(false);
+  return (
+    <div className="scene">
+      <DrawingBoundary>
+        <Drawing key={attempt} {...props} onLost={setLost} />
+      </DrawingBoundary>
+      {lost && (
+        <p className="stage-note lost" role="status">
+          <b>The picture was lost.</b> The numbers beside it are right.
+          <button
+            type="button"
+            className="btn sm"
+            onClick={() => {
+              setLost(false);
+              setAttempt(attempt + 1);
+            }}
+          >
+            Draw again
+          </button>
+        </p>
+      )}
+    </div>
+  );
+}
+
+function Drawing({
   model,
   view,
   source,
   known,
   showTruth = false,
-}: {
-  model: ArmModel;
-  view: View;
-  source: SceneSource;
-  known: boolean;
-  showTruth?: boolean;
-}) {
+  onTurned,
+  antialias = true,
+  onLost,
+}: Props & { onLost: (lost: boolean) => void }) {
   const inks = useReadInks();
-  const [lost, setLost] = useState(false);
-  const frame = useRef<HTMLDivElement>(null);
+  const materials = useMemo(makeInkMaterials, []);
+  // Set while rendering, so that the first picture has its colours already.
+  useMemo(() => colourMaterials(materials, inks), [materials, inks]);
+  useEffect(
+    () => () => {
+      for (const material of materials.all()) material.dispose();
+    },
+    [materials],
+  );
+  const elements = useRef(noSheetElements());
+  const alive = useRef(true);
+  useEffect(() => {
+    alive.current = true;
+    return () => {
+      alive.current = false;
+    };
+  }, []);
   return (
-    <div ref={frame} className="scene" style={{ position: 'absolute', inset: 0 }}>
+    <>
       <Canvas
         orthographic
         flat
         frameloop="demand"
-        dpr={1}
-        camera={{ near: -10, far: 20, position: [2, -2, 2], up: [0, 0, 1] }}
-        gl={{ antialias: true, alpha: true }}
+        dpr={[1, 2]}
+        camera={{ near: 0.1, far: 20, position: [2, -2, 2], up: [0, 0, 1] }}
+        gl={{ antialias, alpha: true }}
         onCreated={({ gl }) => {
-          gl.domElement.dataset.ready = 'true';
-          gl.domElement.setAttribute(
+          const canvas = gl.domElement;
+          canvas.dataset.ready = 'true';
+          canvas.setAttribute('role', 'img');
+          canvas.setAttribute(
             'aria-label',
             `${model.name}, drawn in three dimensions; drag to turn the view`,
           );
-          gl.domElement.setAttribute('role', 'img');
-          gl.domElement.addEventListener('webglcontextlost', (event) => {
+          canvas.addEventListener('webglcontextlost', (event) => {
             event.preventDefault();
-            setLost(true);
+            // Leaving the page gives the context back on purpose.
+            if (alive.current) onLost(true);
           });
-          gl.domElement.addEventListener('webglcontextrestored', () => setLost(false));
+          canvas.addEventListener('webglcontextrestored', () => onLost(false));
         }}
       >
         <InksContext.Provider value={inks}>
-          <CameraRig model={model} view={view} />
-          <DrawOnSamples source={source} />
-          <Floor />
-          <Bench objects={model.bench} />
-          <Arm model={model} source={source} known={known} />
-          <ToolTrace source={source} />
-          <ChainLine model={model} source={source} pick="target" color={inks.plan} />
-          {showTruth && <ChainLine model={model} source={source} pick="truth" color={inks.ink2} />}
+          <InkMaterialsContext.Provider value={materials}>
+            <CameraRig model={model} view={view} source={source} onTurned={() => onTurned?.()} />
+            <DrawOnSamples source={source} />
+            <Floor model={model} />
+            {known && <GroundShadow model={model} source={source} />}
+            <Bench objects={model.bench} />
+            <Arm model={model} source={source} known={known} />
+            <DriveSheet
+              model={model}
+              source={source}
+              known={known}
+              showTruth={showTruth}
+              elements={elements}
+            />
+          </InkMaterialsContext.Provider>
         </InksContext.Provider>
       </Canvas>
-      {lost && (
-        <p className="stage-note" role="status">
-          <b>The picture was lost.</b> The numbers beside it are right. Load the page again to draw it.
-        </p>
-      )}
-    </div>
+      <SheetLines elements={elements} />
+    </>
   );
 }

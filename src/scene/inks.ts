@@ -14,6 +14,7 @@ export interface Inks {
   plan: string;
   move: string;
   move2: string;
+  moveEdge: string;
 }
 
 function read(): Inks {
@@ -31,6 +32,7 @@ function read(): Inks {
     plan: token('plan'),
     move: token('move'),
     move2: token('move-2'),
+    moveEdge: token('move-edge'),
   };
 }
 

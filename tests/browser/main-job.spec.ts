@@ -94,7 +94,9 @@ test('sign in, bring up, jog, teach, record, rehearse, hold the first cycle, run
   );
   await page.getByRole('button', { name: /Resume/ }).click();
   await expect(page.getByRole('status').filter({ hasText: 'Moves in' })).toBeVisible();
-  await expect(page.getByRole('button', { name: /^Run\s*from step 1, after 3 s/ })).toBeVisible({ timeout: 120_000 });
+  await expect(page.getByRole('button', { name: /^Run\s*from step 1, after 3 s/ })).toBeVisible({
+    timeout: 120_000,
+  });
 
   // History: every cycle timed.
   await page.getByRole('link', { name: 'Runs', exact: true }).click();

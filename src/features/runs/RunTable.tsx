@@ -13,7 +13,8 @@ const MOST_MARKS = 12;
 
 function columnsFor(armId: string) {
   return [
-    column.accessor('startedAtMs', {
+    column.display({
+      id: 'startedAtMs',
       header: 'Started',
       cell: ({ row: { original } }) => (
         <>
@@ -22,7 +23,8 @@ function columnsFor(armId: string) {
         </>
       ),
     }),
-    column.accessor('sequenceName', {
+    column.display({
+      id: 'sequenceName',
       header: 'Sequence',
       cell: ({ row: { original } }) => (
         <>
@@ -40,7 +42,8 @@ function columnsFor(armId: string) {
       header: 'One mark a cycle',
       cell: ({ row: { original } }) => <CycleMarks run={original} />,
     }),
-    column.accessor('cyclesDone', {
+    column.display({
+      id: 'cyclesDone',
       header: 'Done',
       cell: ({ row: { original } }) => (
         <>
@@ -64,9 +67,10 @@ function columnsFor(armId: string) {
         );
       },
     }),
-    column.accessor('how', {
+    column.display({
+      id: 'how',
       header: 'How it ended',
-      cell: ({ getValue }) => <Ending how={getValue()} />,
+      cell: ({ row }) => <Ending how={row.original.how} />,
     }),
   ];
 }

@@ -134,7 +134,10 @@ export function SequenceEditor({ arm, newest, old }: { arm: Arm; newest: Sequenc
           )}
         </div>
         <div className="scroll">
-          {shown.steps.length === 0 ? (
+          {poses.isPending ? (
+            // Without the poses every Go to would look as if its pose were gone.
+            <p className="empty quiet">Opening the steps…</p>
+          ) : shown.steps.length === 0 ? (
             <p className="empty quiet">
               No steps yet.{' '}
               {editable ? 'Record by marking where the arm stands, or add steps one by one.' : ''}

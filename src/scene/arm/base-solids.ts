@@ -15,7 +15,9 @@ export function basePieces(model: ArmModel): Pieces {
   const at = (height: number): Point => [x, y, height];
   if (z < 0.03 || Math.abs(unit(first.axis).z) < 0.7)
     return {
-      solids: [uprightBlock([x, y, Math.max(0.01, z / 2 - 0.015)], [radius * 1.2, radius, Math.max(0.02, z - 0.03)])],
+      solids: [
+        uprightBlock([x, y, Math.max(0.01, z / 2 - 0.015)], [radius * 1.2, radius, Math.max(0.02, z - 0.03)]),
+      ],
       marks: [],
     };
   const flange = Math.min(0.012, z * 0.2);

@@ -60,11 +60,7 @@ export function palmPieces(model: ArmModel): Pieces {
   return {
     solids: [
       rod(point(neck), point(middle), 0.0125),
-      block(
-        point(middle),
-        [PALM_M, model.gripper.opening + 2 * FINGER_M + 0.012, 0.018],
-        [way, apart, deep],
-      ),
+      block(point(middle), [PALM_M, model.gripper.opening + 2 * FINGER_M + 0.012, 0.018], [way, apart, deep]),
     ],
     marks: [],
   };

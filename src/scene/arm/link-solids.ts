@@ -37,9 +37,7 @@ function addBody(pieces: Pieces, joint: Joint, next: Joint | undefined): void {
   if (shape.kind === 'box') {
     const { across, height } = sectionDirections(along);
     const middle = far.clone().multiplyScalar(0.5);
-    pieces.solids.push(
-      block(point(middle), [length, shape.width, shape.height], [along, across, height]),
-    );
+    pieces.solids.push(block(point(middle), [length, shape.width, shape.height], [along, across, height]));
     return;
   }
   const radius = halfWidth(shape);
@@ -67,7 +65,9 @@ function addFork(pieces: Pieces, fork: Fork, next: Joint, model: ArmModel, index
     );
     // The bearing's cap, proud of the plate.
     const face = head.clone().addScaledVector(axis, (side * width) / 2);
-    pieces.solids.push(rod(point(face), point(face.clone().addScaledVector(axis, side * 0.003)), hub.radius * 0.62));
+    pieces.solids.push(
+      rod(point(face), point(face.clone().addScaledVector(axis, side * 0.003)), hub.radius * 0.62),
+    );
     const proud = face.clone().addScaledVector(axis, side * 0.0032);
     pieces.marks.push({ segments: ring(point(proud), axis, hub.radius * 0.22), lift: 0.001, kind: 'thin' });
   }
@@ -77,7 +77,7 @@ function addFork(pieces: Pieces, fork: Fork, next: Joint, model: ArmModel, index
   const deep = 0.014 + 0.06 * Math.min(0.6, next.drive.holdingTorque);
   const middle = head.clone().addScaledVector(axis, -(width / 2 + deep / 2 + 0.0005));
   const side = new Vector3().crossVectors(along, axis);
-  pieces.solids.push(block(point(middle), [size, size, deep], [side, along, axis.clone().negate()]));
+  pieces.solids.push(block(point(middle), [size, size, deep], [side, along, axis]));
 }
 
 /** The hub across a joint, with its circles and centre lines on both faces. */
@@ -123,7 +123,9 @@ function addQuill(pieces: Pieces, joint: Joint): void {
   if (Math.abs(hidden) < 0.005) return;
   const top = axis.clone().multiplyScalar(hidden + Math.sign(hidden) * 0.02);
   pieces.solids.push(rod([0, 0, 0], point(top), radius * 0.8));
-  pieces.solids.push(rod(point(top), point(top.clone().addScaledVector(axis, Math.sign(hidden) * 0.008)), radius * 1.8));
+  pieces.solids.push(
+    rod(point(top), point(top.clone().addScaledVector(axis, Math.sign(hidden) * 0.008)), radius * 1.8),
+  );
 }
 
 /** What is fixed to this link for the next joint: a hobby servo beside its hub, or a slide's sleeve. */

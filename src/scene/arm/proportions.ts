@@ -58,7 +58,8 @@ export function forkOf(joint: Joint, next: Joint | undefined): Fork | null {
   const apart = Math.hypot(...next.origin.xyz.map((v, k) => v - end[k]!));
   const straight = next.origin.rpy.every((angle) => Math.abs(angle) < 1e-9);
   const axis = unit(next.axis);
-  if (length > 1.6 * width || apart > 1e-6 || !straight || Math.abs(axis.dot(along) / length) > 0.3) return null;
+  if (length > 1.6 * width || apart > 1e-6 || !straight || Math.abs(axis.dot(along) / length) > 0.3)
+    return null;
   return {
     along: along.normalize(),
     length,
@@ -74,7 +75,10 @@ export function hubOf(joint: Joint, holder: Fork | null): { radius: number; leng
   const half = halfWidth(joint.link.shape);
   if (holder) {
     const room = holder.width - 2 * holder.plate - 0.002;
-    return { radius: Math.max(0.012, Math.min(half * 1.6, holder.depth * 0.46)), length: Math.max(0.008, room) };
+    return {
+      radius: Math.max(0.012, Math.min(half * 1.6, holder.depth * 0.46)),
+      length: Math.max(0.008, room),
+    };
   }
   return { radius: Math.max(0.012, half * 1.65), length: Math.max(0.018, half * 2.5) };
 }

@@ -24,7 +24,13 @@ export function Drawn({ drawing, unknown = false }: { drawing: Drawing; unknown?
         });
     return [paper, outline, edges, ...marks];
   }, [drawing, lines, materials, unknown]);
-  useEffect(() => () => objects.slice(2).forEach((object) => object.geometry.dispose()), [objects]);
+  useEffect(
+    () => () => {
+      // The first two lie in the drawing and go with it.
+      for (const object of objects.slice(2)) object.geometry.dispose();
+    },
+    [objects],
+  );
   useEffect(() => () => disposeDrawing(drawing), [drawing]);
   return objects.map((object) => <primitive key={object.uuid} object={object} />);
 }

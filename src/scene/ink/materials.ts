@@ -3,8 +3,8 @@ import { LineMaterial } from 'three/addons/lines/LineMaterial.js';
 import type { Inks } from '../inks';
 
 /** Line widths of the sheet, CSS px. */
-const OUTLINE_PX = 1.3;
-const EDGE_PX = 1.4;
+const OUTLINE_PX = 1.1;
+const EDGE_PX = 1.25;
 
 /** One set for the whole scene, so that a change of colours or zoom is made in one place. */
 export interface InkMaterials {
@@ -46,12 +46,12 @@ const PAPER_FRAGMENT = /* glsl */ `
 // The solid grown by a few pixels and seen from behind: what stands out around it is its outline.
 const OUTLINE_VERTEX = /* glsl */ `
   attribute vec3 outward;
-  uniform vec2 half; uniform float width;
+  uniform vec2 halfSize; uniform float width;
   void main() {
     gl_Position = projectionMatrix * modelViewMatrix * vec4(position, 1.0);
     vec2 way = (normalMatrix * outward).xy;
     float size = length(way);
-    if (size > 1e-4) gl_Position.xy += way / size * width / half * gl_Position.w;
+    if (size > 1e-4) gl_Position.xy += way / size * width / halfSize * gl_Position.w;
   }`;
 const OUTLINE_FRAGMENT = /* glsl */ `
   uniform vec3 ink; uniform float dotted;
@@ -82,7 +82,7 @@ const MARK_FRAGMENT = /* glsl */ `
     #include <colorspace_fragment>
   }`;
 
-function linePair(dotted: boolean, shared: { half: { value: Vector2 } }): LinePair {
+function linePair(dotted: boolean, shared: { halfSize: { value: Vector2 } }): LinePair {
   const outline = new ShaderMaterial({
     vertexShader: OUTLINE_VERTEX,
     fragmentShader: OUTLINE_FRAGMENT,
@@ -90,7 +90,7 @@ function linePair(dotted: boolean, shared: { half: { value: Vector2 } }): LinePa
       ink: { value: new Color() },
       dotted: { value: dotted ? 1 : 0 },
       width: { value: OUTLINE_PX },
-      half: shared.half,
+      halfSize: shared.halfSize,
     },
     side: BackSide,
   });
@@ -99,7 +99,7 @@ function linePair(dotted: boolean, shared: { half: { value: Vector2 } }): LinePa
 }
 
 export function makeInkMaterials(): InkMaterials {
-  const half = { value: new Vector2(1, 1) };
+  const halfSize = { value: new Vector2(1, 1) };
   const zoom = { value: 1 };
   const paper = new ShaderMaterial({
     vertexShader: PAPER_VERTEX,
@@ -123,8 +123,8 @@ export function makeInkMaterials(): InkMaterials {
     });
   const materials = {
     paper,
-    known: linePair(false, { half }),
-    unknown: linePair(true, { half }),
+    known: linePair(false, { halfSize }),
+    unknown: linePair(true, { halfSize }),
     thin: mark(0),
     centre: mark(1),
   };
@@ -166,8 +166,8 @@ export function scaleMaterials(
   height: number,
   pixelRatio: number,
 ): void {
-  (materials.known.outline.uniforms.half!.value as Vector2).set(width / 2, height / 2);
-  materials.thin.uniforms.zoom!.value = zoom;
+  (materials.known.outline.uniforms.halfSize!.value as Vector2).set(width / 2, height / 2);
+  materials.centre.uniforms.zoom!.value = zoom;
   materials.unknown.edge.dashScale = zoom;
   materials.unknown.outline.uniforms.dotted!.value = 1.05 / pixelRatio;
 }

@@ -84,7 +84,11 @@ export function cheek(
   const side = new Vector3().crossVectors(up, axis);
   // Narrower at the foot than at the head would not be convex.
   const half = Math.max(width / 2, round);
-  const plan = new Shape().moveTo(-half, 0).lineTo(half, 0).absarc(0, height, round, 0, Math.PI, false).closePath();
+  const plan = new Shape()
+    .moveTo(-half, 0)
+    .lineTo(half, 0)
+    .absarc(0, height, round, 0, Math.PI, false)
+    .closePath();
   const geometry = new ExtrudeGeometry(plan, { depth: thickness, bevelEnabled: false, curveSegments: 10 });
   geometry.translate(0, 0, -thickness / 2);
   geometry.applyMatrix4(new Matrix4().makeBasis(side, up, axis).setPosition(...foot));

@@ -9,8 +9,6 @@ const ROOT = resolve(import.meta.dirname, '../../..');
 
 /** Console lines that are nobody's fault here; exact beginnings, each with its reason. */
 const KNOWN_WARNINGS = [
-  // three announces a successor of a class that @react-three/fiber 9 still uses.
-  'THREE.Clock: This module has been deprecated',
   // Software rendering, when a screenshot reads pixels back.
   '[.WebGL-',
 ];
