@@ -31,6 +31,11 @@ export class Servo {
   /** A servo's count is only what it is told: counting anew changes nothing. */
   recount(): void {}
 
+  /** Something outside keeps it at this angle. */
+  put(angle: number): void {
+    this.angle = angle;
+  }
+
   /** @param asked - torque at the joint that would hold it there, N·m */
   advance(command: number, _speed: number, asked: number, energised: boolean, dt: number): void {
     const { drive, hardRange } = this.joint;

@@ -49,6 +49,11 @@ export class Stepper {
     this.offset += this.gain * (before - after);
   }
 
+  /** Something outside keeps it at this position. */
+  put(position: number, count: number): void {
+    this.offset = position - this.gain * count;
+  }
+
   /** @param asked - torque at the joint that would keep it on its set-points, N·m (N) */
   advance(count: number, speed: number, asked: number, energised: boolean, dt: number): void {
     if (energised) {

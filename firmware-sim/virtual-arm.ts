@@ -2,7 +2,7 @@ import { reflectedInertia } from '../shared/arm/drives';
 import type { ArmModel } from '../shared/arm/model';
 import { CARRIES_BELOW } from '../shared/arm/motion-rules';
 import { inverseDynamics } from '../shared/dynamics';
-import { type Chain, compileChain } from '../shared/kinematics';
+import { type Chain, compileChain, lowestPoint } from '../shared/kinematics';
 import type { DriveTruth } from './drive-truth';
 import { Servo } from './servo';
 import { Stepper } from './stepper';
@@ -20,6 +20,7 @@ export class VirtualArm {
   private readonly chain: Chain;
   private readonly drives: (Stepper | Servo)[];
   private readonly positions: number[];
+  private readonly before: Float64Array;
   private readonly qd: Float64Array;
   private readonly qdd: Float64Array;
   private readonly asked: Float64Array;
@@ -31,6 +32,7 @@ export class VirtualArm {
     this.chain = compileChain(model);
     this.positions = [...options.positions];
     const zeros = () => new Float64Array(model.joints.length);
+    this.before = zeros();
     this.qd = zeros();
     this.qdd = zeros();
     this.asked = zeros();
@@ -67,10 +69,24 @@ export class VirtualArm {
     }
     const carries = payload && (gripper === null || gripper < CARRIES_BELOW) ? payload : null;
     inverseDynamics(this.chain, this.positions, this.qd, this.qdd, { payload: carries, out: this.asked });
+    const heightBefore = lowestPoint(this.chain, this.positions);
     for (const [i, drive] of this.drives.entries()) {
       const asked = this.asked[i]! + reflectedInertia(joints[i]!.drive) * this.qdd[i]!;
+      this.before[i] = this.positions[i]!;
       drive.advance(counts[i]!, this.qd[i]!, asked, energised[i]!, dt);
       this.positions[i] = drive.truth(counts[i]!);
+    }
+    this.restOnBench(counts, energised, heightBefore);
+  }
+
+  /** What sinks unpowered lies down on the bench; what is powered may well be driven into it. */
+  private restOnBench(counts: readonly number[], energised: readonly boolean[], heightBefore: number): void {
+    const height = lowestPoint(this.chain, this.positions);
+    if (height >= 0 || height >= heightBefore) return;
+    for (const [i, drive] of this.drives.entries()) {
+      if (energised[i]) continue;
+      drive.put(this.before[i]!, counts[i]!);
+      this.positions[i] = this.before[i]!;
     }
   }
 }

@@ -1,4 +1,5 @@
 import type { ArmModel } from '../shared/arm/model';
+import { compileChain, lowestPoint } from '../shared/kinematics';
 import { Axes } from './axes';
 import type { DriveTruth } from './drive-truth';
 import { VirtualArm } from './virtual-arm';
@@ -63,10 +64,7 @@ export class VirtualBoard {
     this.gripper = gripper ? 1 : null;
     this.watching = joints.map(() => false);
     this.edges = joints.map(() => null);
-    // Left as somebody put it down: somewhere inside its range, lower rather than higher.
-    const positions = joints.map(
-      ({ limits }) => limits.lower + (0.15 + 0.5 * random()) * (limits.upper - limits.lower),
-    );
+    const positions = leftSomewhere(model, random);
     this.arm = new VirtualArm(model, { positions, counts: this.axes.counts, truths });
   }
 
@@ -207,4 +205,16 @@ export class VirtualBoard {
       outputs: [],
     };
   }
+}
+
+/** Left as somebody put it down: somewhere inside its range, lower rather than higher, and above the bench. */
+function leftSomewhere(model: ArmModel, random: () => number): number[] {
+  const { joints } = model;
+  const chain = compileChain(model);
+  const draw = () =>
+    joints.map(({ limits }) => limits.lower + (0.15 + 0.5 * random()) * (limits.upper - limits.lower));
+  let positions = draw();
+  // Some models have no place above their bench: then any will do.
+  for (let tries = 0; tries < 100 && lowestPoint(chain, positions) < 0; tries++) positions = draw();
+  return positions;
 }

@@ -90,6 +90,24 @@ export function radiusAboutJoint(chain: Chain, q: ArrayLike<number>, joint: numb
   return Math.sqrt(farthest);
 }
 
+/** Height of the lowest modelled point above the base frame's xy plane, the bench the arm stands on, m. Allocates nothing. */
+export function lowestPoint(chain: Chain, q: ArrayLike<number>): number {
+  checkLength(chain, q, 'q');
+  sweepFrames(chain, q);
+  const { frames, points, pointLinks } = chain;
+  let lowest = Number.POSITIVE_INFINITY;
+  for (let k = 0; k < pointLinks.length; k++) {
+    const o = 12 * pointLinks[k]!;
+    const height =
+      frames[o + 6]! * points[3 * k]! +
+      frames[o + 7]! * points[3 * k + 1]! +
+      frames[o + 8]! * points[3 * k + 2]! +
+      frames[o + 11]!;
+    if (height < lowest) lowest = height;
+  }
+  return lowest;
+}
+
 /**
  * Upper bound, per joint, of `radiusAboutJoint` over every configuration, whatever the turning joints do and
  * over the whole travel of the sliding ones: what to reckon with while the arm does not know where it stands.

@@ -14,8 +14,6 @@ export interface RehearsalInput {
   steps: readonly ProgramStep[];
   /** Share of the joint speed limits allowed, as the ceiling on Move. */
   ceiling: number;
-  /** Where the cycle begins; by default at its first pose, so that the first move takes no time. */
-  startQ?: readonly number[];
 }
 
 /** A move is looked at this often, s, and at least so many times. */
@@ -27,7 +25,7 @@ const TIGHT = 0.8;
 const AT_LIMIT = 1e-9;
 
 /**
- * Computes one cycle against the arm's model, with the same paths and laws of time that the controller uses:
+ * Computes one cycle, begun where the one before left the arm, against the arm's model, with the same paths and laws of time that the controller uses:
  * how long each step takes, how much torque it needs, how near it comes to a soft limit, how fast the arm's
  * fastest point gets. Each finding is attached to its step.
  */
@@ -57,7 +55,7 @@ class Walk {
   private readonly q: number[];
   private readonly qd: Float64Array;
   private readonly qdd: Float64Array;
-  private gripper = 1;
+  private gripper: number;
   private t = 0;
   private readonly durations: Record<string, number> = {};
   private readonly problems: RehearsalProblem[] = [];
@@ -68,14 +66,15 @@ class Walk {
   private readonly used: number[][];
 
   constructor(private readonly input: RehearsalInput) {
-    const { model, steps, startQ } = input;
+    const { model, steps } = input;
     this.chain = compileChain(model);
     const n = this.chain.n;
     this.tau = new Float64Array(n);
     this.qd = new Float64Array(n);
     this.qdd = new Float64Array(n);
-    const first = steps.find((s) => s.kind === 'goTo');
-    this.q = [...(startQ ?? first?.q ?? model.joints.map((j) => (j.limits.lower + j.limits.upper) / 2))];
+    const last = steps.findLast((step) => step.kind === 'goTo');
+    this.gripper = steps.findLast((step) => step.kind === 'grip')?.opening ?? 1;
+    this.q = [...(last?.q ?? model.joints.map((j) => (j.limits.lower + j.limits.upper) / 2))];
     this.used = model.joints.map(() => []);
   }
 

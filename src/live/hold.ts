@@ -86,15 +86,17 @@ export function beginHold(key: string, motion: HoldMotion): boolean {
   active = hold;
   lastEnd = null;
   hold.timer = window.setInterval(() => beat(hold), HOLD_KEEP_MS);
-  void connection.send({ type: 'hold.start', holdId, motion }).then((outcome) => {
-    if (outcome.ok) {
-      hold.accepted = true;
-      if (active !== hold) connection.post({ type: 'hold.end', holdId });
-      return;
-    }
-    if (active === hold) endHold('not possible');
-    for (const tell of refusals) tell(outcome.message);
-  });
+  void connection
+    .send({ type: 'hold.start', holdId, motion, seenT: latestTelemetry()?.t })
+    .then((outcome) => {
+      if (outcome.ok) {
+        hold.accepted = true;
+        if (active !== hold) connection.post({ type: 'hold.end', holdId });
+        return;
+      }
+      if (active === hold) endHold('not possible');
+      for (const tell of refusals) tell(outcome.message);
+    });
   changed();
   return true;
 }

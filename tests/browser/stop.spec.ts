@@ -5,6 +5,7 @@ import {
   armState,
   atRest,
   declare,
+  goButton,
   newest,
   openArm,
   samples,
@@ -28,7 +29,7 @@ test('Stop in mid-move rests every joint where the stopping shadow said', async 
   await page.getByRole('link', { name: 'Poses', exact: true }).click();
   await page.locator('.pc', { hasText: 'Above scale' }).click();
   // Esc in mid-move, while the button is still held.
-  await holdUntil(page, page.locator('.go', { hasText: /Hold to go there|let go to stop/ }), async () => {
+  await holdUntil(page, goButton(page), async () => {
     if (Math.max(...(await newest(page)).qd.map(Math.abs)) < 0.1) return false;
     await page.keyboard.press('Escape');
     return true;

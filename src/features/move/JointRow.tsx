@@ -6,7 +6,7 @@ import { Pictogram } from '../../components/pictograms';
 import { TorqueUsed } from '../../components/TorqueUsed';
 import { TravelBar } from '../../components/TravelBar';
 import { toast } from '../../components/toast';
-import { readyStop, sendCommand } from '../../live/connection';
+import { nudgeJoint } from '../../live/nudge';
 import { useArmState, useTelemetry } from '../../live/use-live';
 
 /** Nearer to a soft limit than this a joint is at it, rad or m. */
@@ -46,9 +46,8 @@ export const JointRow = memo(function JointRow({
     };
   });
   const press = (direction: 1 | -1) => () => {
-    readyStop();
     const amount = (nudge ?? (type === 'revolute' ? Math.PI / 360 : 0.001)) * direction;
-    void sendCommand({ type: 'nudge', frame: 'joint', axis: index, amount }).then((outcome) => {
+    void nudgeJoint(index, amount).then((outcome) => {
       if (!outcome.ok) toast(outcome.message);
     });
   };

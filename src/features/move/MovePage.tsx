@@ -87,7 +87,14 @@ export function MovePage({ arm }: { arm: Arm }) {
               value={press}
               onChange={setPress}
               options={[
-                { value: 'held', label: <span>moves while held</span>, className: 'pressw' },
+                {
+                  value: 'held',
+                  label: (
+                    <>
+                      <span className="wide">while</span> held
+                    </>
+                  ),
+                },
                 ...NUDGE_ANGLES.map((size, i) => ({
                   value: i as Press,
                   className: 'n',

@@ -4,7 +4,8 @@ import { HoldButton } from '../../components/HoldButton';
 import { Pictogram } from '../../components/pictograms';
 import { TravelBar } from '../../components/TravelBar';
 import { toast } from '../../components/toast';
-import { readyStop, sendCommand } from '../../live/connection';
+import { sendCommand } from '../../live/connection';
+import { nudgeJoint } from '../../live/nudge';
 import { useArmState, useTelemetry } from '../../live/use-live';
 
 /** One press of a synthetic click, or of assistive technology: a small step, rad or m. */
@@ -50,9 +51,8 @@ function JogRow({ joint, index, reason }: { joint: Joint; index: number; reason:
         reason={reason}
         atLimit={direction > 0 ? row.atUpper : row.atLower}
         nudge={() => {
-          readyStop();
           const amount = SMALL[type] * direction;
-          void sendCommand({ type: 'nudge', frame: 'joint', axis: index, amount }).then((outcome) => {
+          void nudgeJoint(index, amount).then((outcome) => {
             if (!outcome.ok) toast(outcome.message);
           });
         }}

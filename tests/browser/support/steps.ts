@@ -1,4 +1,4 @@
-import { expect, type Page } from '@playwright/test';
+import { expect, type Locator, type Page } from '@playwright/test';
 import type { StateMessage, TelemetryMessage } from '../../../shared/live/server-messages';
 
 /** What people do on the pages, as people do it. */
@@ -69,4 +69,9 @@ export function armState(page: Page): Promise<StateMessage> {
 
 export async function atRest(page: Page): Promise<void> {
   await expect.poll(async () => (await newest(page)).qd.every((v) => v === 0)).toBe(true);
+}
+
+/** The big button of a pose, before and while it is held. */
+export function goButton(page: Page): Locator {
+  return page.locator('.go', { hasText: /Hold to go to|let go to stop/i });
 }
