@@ -25,9 +25,9 @@ const TIGHT = 0.8;
 const AT_LIMIT = 1e-9;
 
 /**
- * Computes one cycle, begun where the one before left the arm, against the arm's model, with the same paths and laws of time that the controller uses:
- * how long each step takes, how much torque it needs, how near it comes to a soft limit, how fast the arm's
- * fastest point gets. Each finding is attached to its step.
+ * Computes one cycle, begun where the one before left the arm, against the arm's model, with the same paths and
+ * laws of time that the controller uses: how long each step takes, how much torque it needs, how near it comes to
+ * a soft limit, how fast the arm's fastest point gets. Each finding is attached to its step.
  */
 export function rehearse(input: RehearsalInput): Rehearsal {
   const walk = new Walk(input);

@@ -72,7 +72,6 @@ test('sign in, bring up, jog, teach, record, rehearse, hold the first cycle, run
     await expect(page.getByText(/Saved as version/).first()).toBeVisible();
     await page.getByRole('link', { name: 'Poses', exact: true }).click();
     await page.locator('.pc', { hasText: name }).click();
-    await goButton(page).waitFor();
     await holdUntil(page, goButton(page), async () => {
       const { q, qd } = await newest(page);
       return qd.every((v) => v === 0) && q.every((v, i) => Math.abs(v - captured.get(name)![i]!) < 1e-4);

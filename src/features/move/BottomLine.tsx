@@ -127,6 +127,7 @@ export function BottomLine({ model }: { model: ArmModel }) {
 
 function MovingLine({ model, stopping }: { model: ArmModel; stopping: boolean }) {
   const hold = useArmState((state) => state?.hold ?? null);
+  const run = useArmState((state) => state?.run ?? null);
   const still = useTelemetry((t) => {
     if (!t) return null;
     let most = { joint: -1, share: 0, travel: 0 };
@@ -147,7 +148,9 @@ function MovingLine({ model, stopping }: { model: ArmModel; stopping: boolean })
         ? `Looking for the switch of the ${(model.joints[motion.joint]?.name ?? 'joint').toLowerCase()}.`
         : stopping
           ? `${model.name} comes to rest.`
-          : `${model.name} moves.`;
+          : run
+            ? `${run.sequenceName}, step ${run.stepPath}.`
+            : `${model.name} moves.`;
   return (
     <Message
       kind="moving"
@@ -160,7 +163,7 @@ function MovingLine({ model, stopping }: { model: ArmModel; stopping: boolean })
       <b>{doing}</b>{' '}
       {still ? (
         <>
-          Let go and it stops within <span className="n">{still}</span>.
+          {hold ? 'Let go and it' : 'Stopped, it'} rests within <span className="n">{still}</span>.
         </>
       ) : null}
     </Message>

@@ -1,5 +1,4 @@
 import './glance.css';
-import './glance-more.css';
 import { Link } from 'react-router-dom';
 import { torqueWord } from '../../../shared/arm/drives';
 import type { ArmModel } from '../../../shared/arm/model';

@@ -1,5 +1,4 @@
 import './move.css';
-import './move-more.css';
 import { useMemo, useState } from 'react';
 import type { Arm } from '../../../shared/api/resources';
 import { shownValue } from '../../../shared/arm/units';
@@ -34,7 +33,7 @@ function useReason(): string | null {
   if (!someEnergised) return 'resting';
   if (fault) return 'fault';
   if (!inControl) return 'no control';
-  if (running) return 'a run is on';
+  if (running) return 'running';
   return null;
 }
 
@@ -103,7 +102,7 @@ export function MovePage({ arm }: { arm: Arm }) {
               ]}
             />
           </div>
-          <CeilingControl reason={reason === 'a run is on' ? null : reason} moving={moving} />
+          <CeilingControl reason={reason === 'running' ? null : reason} moving={moving} />
           <div className="c4">
             <div className="lab">
               <span>Or</span>

@@ -1,5 +1,4 @@
 import './poses.css';
-import './poses-more.css';
 import { useCallback, useMemo, useState } from 'react';
 import { useSearchParams } from 'react-router-dom';
 import type { Arm } from '../../../shared/api/resources';

@@ -1,5 +1,4 @@
 import './runs.css';
-import './runs-more.css';
 import { Link, useParams } from 'react-router-dom';
 import type { Arm } from '../../../shared/api/resources';
 import type { RunState } from '../../../shared/live/server-messages';

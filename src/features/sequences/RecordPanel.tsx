@@ -24,7 +24,7 @@ function useJogReason(): string | null {
   if (resting) return 'resting';
   if (fault) return 'fault';
   if (!inControl) return 'no control';
-  return running ? 'a run is on' : null;
+  return running ? 'running' : null;
 }
 
 /** Recording by marking: the live arm, its hold buttons, and one button that adds where it is now. */

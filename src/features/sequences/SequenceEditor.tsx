@@ -1,5 +1,4 @@
 import './sequences.css';
-import './sequences-more.css';
 import { useCallback, useMemo, useState } from 'react';
 import { useSearchParams } from 'react-router-dom';
 import type { Arm, Sequence } from '../../../shared/api/resources';

@@ -1,5 +1,4 @@
 import './sequences.css';
-import './sequences-more.css';
 import { useState } from 'react';
 import { Link, useNavigate } from 'react-router-dom';
 import type { Arm, SequenceSummary } from '../../../shared/api/resources';

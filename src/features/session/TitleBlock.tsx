@@ -1,5 +1,4 @@
 import './session.css';
-import './session-more.css';
 import type { ReactNode } from 'react';
 import { BENCH } from '../../components/drawings/bench';
 import { Strokes } from '../../components/drawings/Drawing';

@@ -14,6 +14,7 @@ export async function holdUntil(
   timeoutMs = 60_000,
 ): Promise<void> {
   const endMs = Date.now() + timeoutMs;
+  await button.first().waitFor();
   for (let press = 0; press < MOST_PRESSES && Date.now() < endMs; press++) {
     const box = await button.boundingBox();
     if (!box) {
