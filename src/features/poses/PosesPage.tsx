@@ -5,9 +5,9 @@ import type { Arm } from '../../../shared/api/resources';
 import { may } from '../../../shared/team/roles';
 import { errorText } from '../../api/client';
 import { usePoses } from '../../api/poses';
+import { CaptureButton, useCaptureReason } from '../../components/CaptureButton';
 import { Message } from '../../components/Message';
 import { useHello } from '../../live/use-live';
-import { CaptureButton, useCaptureReason } from './CaptureButton';
 import { FileMenu } from './FileMenu';
 import { findPoses, tagsInUse } from './find-poses';
 import { PoseCard } from './PoseCard';
@@ -47,7 +47,7 @@ export function PosesPage({ arm }: { arm: Arm }) {
               />
             </div>
             <FileMenu arm={arm} teaches={teaches} onType={() => setTyping(true)} />
-            <CaptureButton arm={arm} onCaptured={choose} />
+            <CaptureButton arm={arm} className="ink" letter onCaptured={choose} />
           </div>
           <div className="r">
             <div className="chips" role="group" aria-label="Tags">

@@ -1,5 +1,5 @@
 import { useFrame } from '@react-three/fiber';
-import { useEffect, useMemo } from 'react';
+import { useEffect, useMemo, useRef } from 'react';
 import { BufferAttribute, BufferGeometry, Color, DoubleSide, Mesh, ShaderMaterial } from 'three';
 import type { ArmModel } from '../../../shared/arm/model';
 import { useInks } from '../inks';
@@ -60,7 +60,8 @@ export function Sweep({ model, index, source }: { model: ArmModel; index: number
     });
     const made = new Mesh(strip(), material);
     made.frustumCulled = false;
-    made.visible = false;
+    // Flat and empty in the first picture: the shader is ready before the first movement, which must not wait for it.
+    made.visible = true;
     return made;
   }, []);
   useEffect(() => {
@@ -76,7 +77,12 @@ export function Sweep({ model, index, source }: { model: ArmModel; index: number
     },
     [mesh],
   );
+  const drawn = useRef(false);
   useFrame(({ gl }) => {
+    if (!drawn.current) {
+      drawn.current = true;
+      return;
+    }
     const sample = source.sample();
     const from = sample?.q[index];
     const to = sample?.stopAt[index];

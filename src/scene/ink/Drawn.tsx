@@ -1,7 +1,5 @@
 import { useEffect, useMemo } from 'react';
 import { BufferAttribute, BufferGeometry, LineSegments, Mesh } from 'three';
-import { LineSegments2 } from 'three/addons/lines/LineSegments2.js';
-import { LineSegmentsGeometry } from 'three/addons/lines/LineSegmentsGeometry.js';
 import type { Drawing } from './drawing';
 import { disposeDrawing } from './drawing';
 import { useInkMaterials } from './ink-context';
@@ -14,8 +12,7 @@ export function Drawn({ drawing, unknown = false }: { drawing: Drawing; unknown?
   const objects = useMemo(() => {
     const paper = new Mesh(drawing.paper, materials.paper);
     const outline = new Mesh(drawing.outline, lines.outline);
-    const edges = new LineSegments2(new LineSegmentsGeometry().setPositions(drawing.edges), lines.edge);
-    edges.computeLineDistances();
+    const edges = new Mesh(ribbons(drawing.edges), lines.edge);
     const marks = unknown
       ? []
       : (['thin', 'centre'] as const).flatMap((kind) => {
@@ -33,6 +30,36 @@ export function Drawn({ drawing, unknown = false }: { drawing: Drawing; unknown?
   );
   useEffect(() => () => disposeDrawing(drawing), [drawing]);
   return objects.map((object) => <primitive key={object.uuid} object={object} />);
+}
+
+/** Two triangles a segment, widened on the screen by the edge material. */
+function ribbons(segments: Float32Array): BufferGeometry {
+  const count = segments.length / 6;
+  const position = new Float32Array(count * 12);
+  const other = new Float32Array(count * 12);
+  const side = new Float32Array(count * 4);
+  const far = new Float32Array(count * 4);
+  const index: number[] = [];
+  for (let k = 0; k < count; k++) {
+    const near = segments.subarray(6 * k, 6 * k + 3);
+    const end = segments.subarray(6 * k + 3, 6 * k + 6);
+    for (let corner = 0; corner < 4; corner++) {
+      const atEnd = corner > 1;
+      position.set(atEnd ? end : near, 12 * k + 3 * corner);
+      other.set(atEnd ? near : end, 12 * k + 3 * corner);
+      // Seen from its other end, left is right.
+      side[4 * k + corner] = corner === 0 || corner === 3 ? 1 : -1;
+      far[4 * k + corner] = atEnd ? 1 : 0;
+    }
+    const first = 4 * k;
+    index.push(first, first + 1, first + 2, first + 2, first + 1, first + 3);
+  }
+  const geometry = new BufferGeometry().setIndex(index);
+  geometry.setAttribute('position', new BufferAttribute(position, 3));
+  geometry.setAttribute('other', new BufferAttribute(other, 3));
+  geometry.setAttribute('side', new BufferAttribute(side, 1));
+  geometry.setAttribute('far', new BufferAttribute(far, 1));
+  return geometry;
 }
 
 function markGeometry(marks: readonly Marks[]): BufferGeometry {

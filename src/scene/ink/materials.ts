@@ -1,10 +1,10 @@
-import { BackSide, Color, ShaderMaterial, Vector2 } from 'three';
-import { LineMaterial } from 'three/addons/lines/LineMaterial.js';
+import { BackSide, Color, DoubleSide, ShaderMaterial, Vector2 } from 'three';
 import type { Inks } from '../inks';
 
 /** Line widths of the sheet, CSS px. */
 const OUTLINE_PX = 1.1;
 const EDGE_PX = 1.25;
+const DASH_PX = 2.6;
 
 /** One set for the whole scene, so that a change of colours or zoom is made in one place. */
 export interface InkMaterials {
@@ -14,11 +14,11 @@ export interface InkMaterials {
   unknown: LinePair;
   thin: ShaderMaterial;
   centre: ShaderMaterial;
-  all(): (ShaderMaterial | LineMaterial)[];
+  all(): ShaderMaterial[];
 }
 export interface LinePair {
   outline: ShaderMaterial;
-  edge: LineMaterial;
+  edge: ShaderMaterial;
 }
 
 // Up is card, the side away from the light is shaded, the rest is the sheet: as the boxes of the drawing sheet.
@@ -62,6 +62,32 @@ const OUTLINE_FRAGMENT = /* glsl */ `
     #include <colorspace_fragment>
   }`;
 
+// A ribbon of the ink's width between two points, facing the eye. Not three's own wide lines: those are instanced,
+// and a machine that draws without a graphics card takes each instance on its own, which held up the whole page.
+const EDGE_VERTEX = /* glsl */ `
+  attribute vec3 other; attribute float side; attribute float far;
+  uniform vec2 halfSize; uniform float width;
+  varying float vAlong;
+  void main() {
+    gl_Position = projectionMatrix * modelViewMatrix * vec4(position, 1.0);
+    vec4 there = projectionMatrix * modelViewMatrix * vec4(other, 1.0);
+    vec2 way = (there.xy / there.w - gl_Position.xy / gl_Position.w) * halfSize;
+    float size = length(way);
+    vec2 along = size > 1e-4 ? way / size : vec2(1.0, 0.0);
+    vAlong = far * size;
+    // A third of the width beyond its ends, so that corners close.
+    vec2 grown = vec2(-along.y, along.x) * side * 0.5 - along * 0.33;
+    gl_Position.xy += grown * width / halfSize * gl_Position.w;
+  }`;
+const EDGE_FRAGMENT = /* glsl */ `
+  uniform vec3 ink; uniform float dashed;
+  varying float vAlong;
+  void main() {
+    if (dashed > 0.0 && mod(vAlong, 2.0 * dashed) > dashed) discard;
+    gl_FragColor = vec4(ink, 1.0);
+    #include <colorspace_fragment>
+  }`;
+
 // A hairline lifted towards the eye: a tube's centre line is drawn on its near side.
 const MARK_VERTEX = /* glsl */ `
   attribute float along; attribute float lift;
@@ -94,7 +120,17 @@ function linePair(dotted: boolean, shared: { halfSize: { value: Vector2 } }): Li
     },
     side: BackSide,
   });
-  const edge = new LineMaterial({ linewidth: EDGE_PX, dashed: dotted, dashSize: 2.6, gapSize: 2.6 });
+  const edge = new ShaderMaterial({
+    vertexShader: EDGE_VERTEX,
+    fragmentShader: EDGE_FRAGMENT,
+    uniforms: {
+      ink: { value: new Color() },
+      dashed: { value: dotted ? DASH_PX : 0 },
+      width: { value: EDGE_PX },
+      halfSize: shared.halfSize,
+    },
+    side: DoubleSide,
+  });
   return { outline, edge };
 }
 
@@ -147,9 +183,9 @@ export function colourMaterials(materials: InkMaterials, inks: Inks): void {
   paper.shade!.value.set(inks.shade);
   paper.dark!.value.set(inks.ink2);
   (materials.known.outline.uniforms.ink!.value as Color).set(inks.ink);
-  materials.known.edge.color.set(inks.ink);
+  (materials.known.edge.uniforms.ink!.value as Color).set(inks.ink);
   (materials.unknown.outline.uniforms.ink!.value as Color).set(inks.ink2);
-  materials.unknown.edge.color.set(inks.ink2);
+  (materials.unknown.edge.uniforms.ink!.value as Color).set(inks.ink2);
   (materials.thin.uniforms.ink!.value as Color).set(inks.ink);
   (materials.centre.uniforms.ink!.value as Color).set(inks.ink2);
 }
@@ -168,6 +204,5 @@ export function scaleMaterials(
 ): void {
   (materials.known.outline.uniforms.halfSize!.value as Vector2).set(width / 2, height / 2);
   materials.centre.uniforms.zoom!.value = zoom;
-  materials.unknown.edge.dashScale = zoom;
   materials.unknown.outline.uniforms.dotted!.value = 1.05 / pixelRatio;
 }

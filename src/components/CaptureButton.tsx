@@ -1,11 +1,11 @@
-import type { Arm } from '../../../shared/api/resources';
-import { worstTrust } from '../../../shared/arm/trust';
-import { may } from '../../../shared/team/roles';
-import { errorText } from '../../api/client';
-import { useCapturePose } from '../../api/poses';
-import { letterKeysOn, useLetterKey } from '../../components/letter-keys';
-import { toast } from '../../components/toast';
-import { useArmState, useHello } from '../../live/use-live';
+import type { Arm } from '../../shared/api/resources';
+import { worstTrust } from '../../shared/arm/trust';
+import { may } from '../../shared/team/roles';
+import { errorText } from '../api/client';
+import { useCapturePose } from '../api/poses';
+import { useArmState, useHello } from '../live/use-live';
+import { letterKeysOn, useLetterKey } from './letter-keys';
+import { toast } from './toast';
 
 /** Why nothing can be captured now, or null. The server asks the same of the controller. */
 export function useCaptureReason(): string | null {
@@ -20,7 +20,18 @@ export function useCaptureReason(): string | null {
 }
 
 /** Where the controller says the arm stands becomes a pose; no numbers travel from here. */
-export function CaptureButton({ arm, onCaptured }: { arm: Arm; onCaptured: (id: string) => void }) {
+export function CaptureButton({
+  arm,
+  className = '',
+  letter = false,
+  onCaptured,
+}: {
+  arm: Arm;
+  className?: string;
+  /** Whether C presses it too; at most one on a page. */
+  letter?: boolean;
+  onCaptured?: (id: string) => void;
+}) {
   const capture = useCapturePose(arm.id);
   const reason = useCaptureReason();
   const usable = reason === null && !capture.isPending;
@@ -30,16 +41,22 @@ export function CaptureButton({ arm, onCaptured }: { arm: Arm; onCaptured: (id: 
       {
         onSuccess: (pose) => {
           toast(`Captured as “${pose.name}”.`);
-          onCaptured(pose.id);
+          onCaptured?.(pose.id);
         },
         onError: (error) => toast(errorText(error)),
       },
     );
-  useLetterKey('c', usable ? press : null);
+  useLetterKey('c', letter && usable ? press : null);
   return (
-    <button type="button" className="btn ink" disabled={!usable} title={reason ?? undefined} onClick={press}>
+    <button
+      type="button"
+      className={`btn ${className}`}
+      disabled={!usable}
+      title={reason ?? undefined}
+      onClick={press}
+    >
       Capture pose
-      {usable && letterKeysOn() && (
+      {letter && usable && letterKeysOn() && (
         <span aria-hidden="true">
           <kbd>C</kbd>
         </span>
