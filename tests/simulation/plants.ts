@@ -24,7 +24,9 @@ export const PLANTS: Record<Rule, () => Plant> = {
   position: () => withLimits(({ lower, upper }) => ({ lower: lower - 0.02, upper: upper + 0.02 })),
   velocity: () => withLimits(({ velocity }) => ({ velocity: 1.2 * velocity })),
   ceiling: () => ({ incoming: raisedCeiling }),
-  acceleration: () => withLimits(({ acceleration }) => ({ acceleration: 1.2 * acceleration })),
+  // With its own jerk alone a slow move would never get as far as its acceleration.
+  acceleration: () =>
+    withLimits(({ acceleration, jerk }) => ({ acceleration: 1.6 * acceleration, jerk: 4 * jerk })),
   jerk: () => withLimits(({ jerk }) => ({ jerk: 1.2 * jerk })),
   pointSpeed: () => ({ model: shorter }),
   conditions: drifting,
@@ -51,9 +53,9 @@ function withLimits(change: (limits: JointLimits) => Partial<JointLimits>): Plan
 /** The arm is longer than its model says. */
 function shorter(model: ArmModel): ArmModel {
   const shrink = (xyz: readonly [number, number, number]): [number, number, number] => [
-    0.7 * xyz[0],
-    0.7 * xyz[1],
-    0.7 * xyz[2],
+    0.4 * xyz[0],
+    0.4 * xyz[1],
+    0.4 * xyz[2],
   ];
   return {
     ...model,

@@ -26,30 +26,19 @@ describe('an hour of simulated random use', () => {
   });
 });
 
-/** Seeds whose first minutes come upon the act that shows the bug. */
-const SHOWN_BY: Record<Rule, number> = {
-  position: 7,
-  velocity: 1,
-  ceiling: 2,
-  acceleration: 9,
-  jerk: 4,
-  pointSpeed: 9,
-  conditions: 4,
-  holdEnds: 4,
-  unknownTravel: 1,
-  nudgeTravel: 4,
-  stoppingShadow: 4,
-  watchdog: 1,
-  lastWord: 4,
-};
-const PLANT_HOURS = 0.08;
+/** Not every few minutes of use come upon the act that shows a bug: so many stretches of use at most. */
+const MOST_SEEDS = 16;
+const PLANT_HOURS = 0.06;
 /** What a planted bug breaks first may be another rule: too fast a joint is above its ceiling before its limit. */
 const FIRST_SEEN_ELSEWHERE: readonly Rule[] = ['velocity', 'unknownTravel'];
 
 describe('the checker finds a bug planted against', () => {
   it.each([...RULES])('%s', { timeout: 200_000 }, (rule) => {
-    const { rulesBroken } = simulate({ hours: PLANT_HOURS, seed: SHOWN_BY[rule], plant: rule });
-    if (FIRST_SEEN_ELSEWHERE.includes(rule)) expect(rulesBroken).not.toEqual([]);
-    else expect(rulesBroken).toContain(rule);
+    const shows = (broken: readonly Rule[]) =>
+      FIRST_SEEN_ELSEWHERE.includes(rule) ? broken.length > 0 : broken.includes(rule);
+    let seed = 1;
+    while (seed <= MOST_SEEDS && !shows(simulate({ hours: PLANT_HOURS, seed, plant: rule }).rulesBroken))
+      seed++;
+    expect(seed, 'stretches of use looked at').toBeLessThanOrEqual(MOST_SEEDS);
   });
 });
