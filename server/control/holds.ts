@@ -8,6 +8,7 @@ import { beginReference } from './reference';
 import { type Refusal, refusal } from './report';
 import { holdRun, letGoOfRun } from './runner';
 import type { Arm, ControllerState, Outputs } from './state';
+import { blockedBy, moveTool } from './tool-moves';
 
 export function startHold(
   arm: Arm,
@@ -68,10 +69,18 @@ function begin(
   }
 }
 
+/** A press on a tool axis goes so far at most, m and rad: farther than any arm of this kind gets. */
+const FAR = { way: 1.2, turn: 2 * Math.PI };
+
 function beginJog(arm: Arm, state: ControllerState, motion: Extract<HoldMotion, { kind: 'jog' }>): Refusal {
   const { axis, direction, frame } = motion;
+  if (frame !== 'joint' && typeof axis === 'string')
+    return moveTool(arm, state, frame, axis, direction * FAR[axis.length === 1 ? 'way' : 'turn'], {
+      by: 'hold',
+      asFar: true,
+    });
   if (frame !== 'joint' || typeof axis !== 'number')
-    return refusal('frameNotAvailable', 'This arm is jogged joint by joint.');
+    return refusal('wrongAxis', 'Joints are jogged by number, the tool by x, y, z, rx, ry or rz.');
   const joint = arm.model.joints[axis]!;
   const reach = jogBound(arm, state, axis, direction);
   const way = (reach - state.q[axis]!) * direction;
@@ -130,7 +139,9 @@ export function tickHold(arm: Arm, state: ControllerState): void {
   if (state.nowS - hold.lastKeepS >= HOLD_EXPIRY_MS / 1000) return endHold(arm, state, null);
   const { kind } = hold.motion;
   if ((kind !== 'jog' && kind !== 'pose' && kind !== 'joints') || !hasArrived(state)) return;
-  if (hold.motion.kind === 'jog' && typeof hold.motion.axis === 'number')
+  const end = state.move?.path.kind === 'tool' ? state.move.path.end : null;
+  if (hold.motion.kind === 'jog' && end) state.blocked = blockedBy(arm, end);
+  else if (hold.motion.kind === 'jog' && typeof hold.motion.axis === 'number')
     state.blocked = {
       joint: hold.motion.axis,
       reason: positionKnown(state)

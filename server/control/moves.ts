@@ -1,7 +1,9 @@
 import {
   alongPath,
   jointPath,
+  type MotionPath,
   pathLimits,
+  pathRates,
   planPosition,
   planVelocity,
   restPosition,
@@ -12,17 +14,26 @@ import type { Arm, ControllerState, Move } from './state';
 
 /** The limits of s that hold for this move now. */
 function limitsOf(arm: Arm, state: ControllerState, move: Move) {
-  return pathLimits(arm.chain, move.path, capsFor(state, move.fraction));
+  return pathLimits(arm.chain, move.path, capsFor(state, move.fraction), move.s.velocity);
 }
 
-/** Starts a move from where the arm stands to `to`; `fraction` is the speed the act itself asks for. */
+/** Starts a move of all joints together from where the arm stands to `to`; `fraction` is the speed the act itself asks for. */
 export function startMove(
   arm: Arm,
   state: ControllerState,
   to: readonly number[],
   act: Pick<Move, 'by' | 'fraction' | 'target'>,
 ): void {
-  const path = jointPath(arm.chain, state.q, to, reachToUse(arm, state));
+  startOnPath(arm, state, jointPath(arm.chain, state.q, to, reachToUse(arm, state)), act);
+}
+
+/** Starts a move along a path that begins where the arm stands. */
+export function startOnPath(
+  arm: Arm,
+  state: ControllerState,
+  path: MotionPath,
+  act: Pick<Move, 'by' | 'fraction' | 'target'>,
+): void {
   const s = { position: 0, velocity: 0, acceleration: 0 };
   const move: Move = {
     ...act,
@@ -69,11 +80,7 @@ export function advanceMove(state: ControllerState, dt: number): void {
   const wasMoving = isMoving(state);
   move.t += dt;
   sampleProfile(move.profile, move.t, move.s);
-  const { direction } = move.path;
-  for (let i = 0; i < direction.length; i++) {
-    state.qd[i] = direction[i]! * move.s.velocity;
-    state.qdd[i] = direction[i]! * move.s.acceleration;
-  }
+  pathRates(move.path, move.s, state.qd, state.qdd);
   // Once at rest the last position is kept as it was sent: no further set-point differs by a rounding.
   if (wasMoving) alongPath(move.path, move.s.position, state.q);
 }

@@ -1,6 +1,6 @@
 import { CEILINGS } from '../../shared/arm/trust';
 import { shownValue } from '../../shared/arm/units';
-import { radiusAboutJoint } from '../../shared/kinematics';
+import { radiusAboutJoint, type ToolAxis, type ToolFrame } from '../../shared/kinematics';
 import {
   type ClientMessage,
   NUDGE_ANGLES,
@@ -13,6 +13,7 @@ import { startMove } from './moves';
 import type { Actor } from './process-messages';
 import { audit, type Refusal, refusal, tell } from './report';
 import type { Arm, ControllerState, Outputs } from './state';
+import { moveTool } from './tool-moves';
 
 /** Rounding of what pages send, rad or m. */
 const SAME = 1e-9;
@@ -29,8 +30,13 @@ export function nudge(
   const late = tooLate(state, message.seenT);
   if (late) return late;
   if (state.run) return refusal('running', 'End the run first.');
+  if (frame !== 'joint' && typeof axis === 'string') {
+    const no = mayMove(arm, state) ?? nudgeTool(arm, state, frame, axis, amount);
+    if (!no) audit(state, outputs, actor, 'nudge', `tool, ${frame} ${axis} by ${amount}`);
+    return no;
+  }
   if (frame !== 'joint' || typeof axis !== 'number')
-    return refusal('frameNotAvailable', 'This arm is nudged joint by joint.');
+    return refusal('wrongAxis', 'Joints are nudged by number, the tool by x, y, z, rx, ry or rz.');
   const joint = arm.model.joints[axis];
   if (!joint) return refusal('noSuchJoint', `${arm.model.name} has no joint ${axis + 1}.`);
   const no = mayMove(arm, state, axis);
@@ -61,4 +67,23 @@ export function nudge(
     );
   audit(state, outputs, actor, 'nudge', `${joint.name} by ${shownValue(joint.type, most)}`);
   return null;
+}
+
+function nudgeTool(
+  arm: Arm,
+  state: ControllerState,
+  frame: ToolFrame,
+  axis: ToolAxis,
+  amount: number,
+): Refusal {
+  const sizes = axis.length === 2 ? NUDGE_ANGLES : NUDGE_LENGTHS;
+  if (!sizes.some((size) => Math.abs(size - Math.abs(amount)) < SAME))
+    return refusal('notANudge', 'That is not one of the nudge sizes.');
+  state.blocked = null;
+  return moveTool(arm, state, frame, axis, amount, {
+    by: 'nudge',
+    asFar: false,
+    fraction: CEILINGS.easy,
+    farthest: NUDGE_MAX_TOOL_TRAVEL,
+  });
 }

@@ -1,12 +1,14 @@
 import { CEILINGS, worstTrust } from '../../shared/arm/trust';
 import type { ClientMessage } from '../../shared/live/client-messages';
+import { straightPath } from '../../shared/motion';
 import type { Program, ProgramStep } from '../../shared/sequence/program';
-import { positionKnown } from './ceiling';
+import { capsFor, positionKnown } from './ceiling';
 import { mayReach } from './may-move';
-import { isMoving, letGo, replanMove, startMove } from './moves';
+import { isMoving, letGo, replanMove, startMove, startOnPath } from './moves';
 import type { Actor, ArmRecord } from './process-messages';
 import { audit, type Refusal, refusal, tell } from './report';
 import type { Arm, ControllerState, Outputs, Run } from './state';
+import { inWords } from './tool-moves';
 
 /** Before unheld motion: a countdown that people can hear and see, s. */
 const COUNTDOWN_S = 3;
@@ -188,19 +190,34 @@ export function tickRun(arm: Arm, state: ControllerState, outputs: Outputs, dt: 
   }
   if (run.phase !== 'running' && run.phase !== 'heldRunning') return;
   run.cycleSeconds += dt;
-  if (run.activity.kind === 'none') beginStep(arm, state, run);
+  if (run.activity.kind === 'none') {
+    const trouble = beginStep(arm, state, run);
+    if (trouble) return pauseRun(arm, state, trouble);
+  }
   if (stepDone(state, run, dt)) finishStep(state, outputs, run);
 }
 
-function beginStep(arm: Arm, state: ControllerState, run: Run): void {
+/** @returns why the step cannot begin, in words */
+function beginStep(arm: Arm, state: ControllerState, run: Run): string | null {
   const step = run.program.steps[run.stepIndex]!;
   if (step.kind === 'goTo') {
-    startMove(arm, state, step.q, { by: 'run', fraction: stepFraction(run, step), target: step.q });
+    const act = { by: 'run', fraction: stepFraction(run, step), target: step.q } as const;
+    if (step.straight) {
+      const { path, refusal: end } = straightPath(
+        arm.chain,
+        state.q,
+        step.q,
+        capsFor(state, act.fraction).fraction,
+      );
+      if (!path) return `No straight way to “${step.label}” from here: ${inWords(arm, end, true)}`;
+      startOnPath(arm, state, path, act);
+    } else startMove(arm, state, step.q, act);
     run.activity = { kind: 'move' };
   } else if (step.kind === 'grip') {
     if (state.gripper) state.gripper.target = step.opening;
     run.activity = { kind: 'grip' };
   } else run.activity = { kind: 'wait', leftS: step.seconds };
+  return null;
 }
 
 function stepDone(state: ControllerState, run: Run, dt: number): boolean {

@@ -3,7 +3,7 @@ import { CEILINGS, type Trust } from '../../shared/arm/trust';
 import { type Chain, compileChain, worstReach } from '../../shared/kinematics';
 import type { HoldMotion } from '../../shared/live/client-messages';
 import type { EventMessage, FaultState, RUN_PHASES } from '../../shared/live/server-messages';
-import type { AxisState, JointPath, Profile } from '../../shared/motion';
+import type { AxisState, MotionPath, Profile } from '../../shared/motion';
 import type { Program } from '../../shared/sequence/program';
 import type { Role } from '../../shared/team/roles';
 import type { BoardOrder, BoardSample, Setpoint } from './arm-link';
@@ -36,9 +36,9 @@ export interface ControlRequest {
   forced: boolean;
 }
 
-/** One motion: a straight joint path and the law of time on it. */
+/** One motion: a path and the law of time on it. */
 export interface Move {
-  path: JointPath;
+  path: MotionPath;
   /** What keeps it going: with its hold or run gone it has to be on its ramp to rest. */
   by: 'hold' | 'nudge' | 'run';
   /** Share of each joint's speed limit that the act itself asks for; the ceiling comes on top. */

@@ -1,5 +1,6 @@
 import type { Trust } from '../../shared/arm/trust';
 import { shownValue } from '../../shared/arm/units';
+import { pathMoves } from '../../shared/motion';
 import { isMoving, letGo } from './moves';
 import type { Actor } from './process-messages';
 import { audit, type Refusal, refusal, tell } from './report';
@@ -103,7 +104,7 @@ export function tickServos(arm: Arm, state: ControllerState): void {
   for (let i = 0; i < arm.chain.n; i++) {
     const settled = state.servoSettledS[i];
     if (settled === null || settled === undefined) continue;
-    if (isMoving(state) && state.move!.path.direction[i] !== 0) settleServo(arm, state, i);
+    if (isMoving(state) && pathMoves(state.move!.path, i)) settleServo(arm, state, i);
     else if (state.nowS >= settled) {
       state.servoSettledS[i] = null;
       setTrust(state, [i], 'referenced', `${arm.model.joints[i]!.name} has settled.`);

@@ -1,6 +1,6 @@
 import type { Chain } from './chain';
 import type { IkMemory } from './ik-memory';
-import { AXIS, POSITION } from './ik-task';
+import { AXIS, POSITION, TILT } from './ik-task';
 
 /**
  * One step of bounded, damped least squares (Levenberg–Marquardt) for inverse kinematics, in scaled units.
@@ -30,6 +30,14 @@ export function normalEquations(chain: Chain, memory: IkMemory): void {
     by = frames[o + 3]! * a[0]! + frames[o + 4]! * a[1]! + frames[o + 5]! * a[2]!;
     bz = frames[o + 6]! * a[0]! + frames[o + 7]! * a[1]! + frames[o + 8]! * a[2]!;
   }
+  // A tilt task counts turns about one axis only.
+  const tilting = task.kind === TILT;
+  if (tilting) {
+    const j = 12 * task.tiltJoint;
+    bx = frames[j + 2]!;
+    by = frames[j + 5]!;
+    bz = frames[j + 8]!;
+  }
   const e0 = error[0]! * perLength;
   const e1 = error[1]! * perLength;
   const e2 = error[2]! * perLength;
@@ -58,9 +66,9 @@ export function normalEquations(chain: Chain, memory: IkMemory): void {
       columns[c + 1] = az * dx - ax * dz;
       columns[c + 2] = ax * dy - ay * dx;
       const along = ax * bx + ay * by + az * bz;
-      ax -= along * bx;
-      ay -= along * by;
-      az -= along * bz;
+      ax = tilting ? along * bx : ax - along * bx;
+      ay = tilting ? along * by : ay - along * by;
+      az = tilting ? along * bz : az - along * bz;
       columns[c + 3] = ax * turning;
       columns[c + 4] = ay * turning;
       columns[c + 5] = az * turning;

@@ -13,15 +13,20 @@ export interface IkTask {
 export const POSE = 0;
 export const POSITION = 1;
 export const AXIS = 2;
+/** Of a line only: the tool point, and how far the tool leans from upright in the plane of the arm. */
+export const TILT = 3;
 
 /** A task in the form the inner loops read. */
 export interface CompiledTask {
-  kind: typeof POSE | typeof POSITION | typeof AXIS;
+  kind: typeof POSE | typeof POSITION | typeof AXIS | typeof TILT;
   position: Float64Array;
   rotation: Float64Array;
   /** Unit vectors. */
   toolAxis: Float64Array;
   baseAxis: Float64Array;
+  /** The joint about whose axis the lean is measured, and the lean of `toolAxis`, rad. */
+  tiltJoint: number;
+  tilt: number;
 }
 
 export function emptyTask(): CompiledTask {
@@ -31,6 +36,8 @@ export function emptyTask(): CompiledTask {
     rotation: new Float64Array(9),
     toolAxis: new Float64Array(3),
     baseAxis: new Float64Array(3),
+    tiltJoint: 0,
+    tilt: 0,
   };
 }
 
@@ -83,6 +90,7 @@ export function taskError(chain: Chain, task: CompiledTask, to: Float64Array): v
   to[2] = position[2]! - frames[o + 11]!;
   if (task.kind === POSE) poseRotationError(frames, o, task.rotation, to);
   else if (task.kind === AXIS) axisError(frames, o, task, to);
+  else if (task.kind === TILT) tiltError(chain, task, to);
   else {
     to[3] = 0;
     to[4] = 0;
@@ -163,6 +171,28 @@ function axisError(frames: Float64Array, o: number, task: CompiledTask, to: Floa
   to[3] = scale * cx;
   to[4] = scale * cy;
   to[5] = scale * cz;
+}
+
+/** How far the tool leans: the angle from the base's z to `toolAxis` about the axis of `tiltJoint`, rad, in `chain.frames`. */
+export function tiltOf(chain: Chain, tiltJoint: number, toolAxis: ArrayLike<number>): number {
+  const { frames } = chain;
+  const o = 12 * chain.n;
+  const j = 12 * tiltJoint;
+  const x = frames[o]! * toolAxis[0]! + frames[o + 1]! * toolAxis[1]! + frames[o + 2]! * toolAxis[2]!;
+  const y = frames[o + 3]! * toolAxis[0]! + frames[o + 4]! * toolAxis[1]! + frames[o + 5]! * toolAxis[2]!;
+  const z = frames[o + 6]! * toolAxis[0]! + frames[o + 7]! * toolAxis[1]! + frames[o + 8]! * toolAxis[2]!;
+  // z × axis = (−y, x, 0), along the joint's axis.
+  return Math.atan2(x * frames[j + 5]! - y * frames[j + 2]!, z);
+}
+
+function tiltError(chain: Chain, task: CompiledTask, to: Float64Array): void {
+  const { frames } = chain;
+  const j = 12 * task.tiltJoint;
+  const off = task.tilt - tiltOf(chain, task.tiltJoint, task.toolAxis);
+  const short = off - 2 * Math.PI * Math.round(off / (2 * Math.PI));
+  to[3] = short * frames[j + 2]!;
+  to[4] = short * frames[j + 5]!;
+  to[5] = short * frames[j + 8]!;
 }
 
 /** Length of the position part of an error, m. */

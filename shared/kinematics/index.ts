@@ -22,7 +22,9 @@ export {
   sampleLine,
 } from './line';
 export type { LineTarget } from './line-task';
-export { fastestPointSpeed, lowestPoint, radiusAboutJoint, worstReach } from './points';
+export { fastestPointSpeed, lowestPoint, pointPlaces, radiusAboutJoint, worstReach } from './points';
 export { seededRandom } from './random';
 export { rotationAbout, rotationFromRpy, rotationVector } from './rotation';
 export { type Dexterity, dexterity, singularValuesOf } from './singular-values';
+export { toolTilt } from './tilt';
+export { type ToolAxis, type ToolFrame, type ToolKeeps, toolAxisOffer, toolLine } from './tool-axes';

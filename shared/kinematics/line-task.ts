@@ -1,7 +1,8 @@
-import type { Vec3 } from './chain';
-import type { Transform } from './frames';
-import { AXIS, type CompiledTask, compileTask, emptyTask, POSE, POSITION } from './ik-task';
+import type { Chain, Vec3 } from './chain';
+import { forwardKinematics, type Transform } from './frames';
+import { AXIS, type CompiledTask, compileTask, emptyTask, POSE, POSITION, TILT, tiltOf } from './ik-task';
 import { multiply3, rotationAbout, rotationVector } from './rotation';
+import { tiltAxisOf } from './tilt';
 
 /** Where a straight line ends, base frame. With only a position the tool's rotation is left free. */
 export interface LineTarget {
@@ -13,6 +14,8 @@ export interface LineTarget {
   turn?: { axis: ArrayLike<number>; angle: number };
   /** Or a direction of the tool frame that stays parallel to itself, turns about it being free. */
   keep?: ArrayLike<number>;
+  /** Or by how much the tool's tilt changes on the way, rad, for arms that can only tilt it (`tiltAxisOf`); 0 keeps it. */
+  tilt?: number;
 }
 
 /** A task that moves with the fraction of the way. */
@@ -29,14 +32,25 @@ export interface MovingTask {
   baseAxis: Float64Array;
   /** d(tool pose)/ds: way, then axis · angle. */
   twist: Float64Array;
+  tiltJoint: number;
+  /** Tilt at the start and its change on the way, rad. */
+  tilt: number;
+  tilting: number;
   /** For `placeTask`. */
   turned: Float64Array;
 }
 
-export function movingTask(from: Transform, target: LineTarget): MovingTask {
-  if ([target.rotation, target.turn, target.keep].filter((given) => given !== undefined).length > 1)
-    throw new RangeError('a line has one of rotation, turn and keep');
-  const kind = target.rotation || target.turn ? POSE : target.keep ? AXIS : POSITION;
+/** @param start - where the line begins, rad (m) */
+export function movingTask(chain: Chain, start: ArrayLike<number>, target: LineTarget): MovingTask {
+  const { rotation: toRotation, turn, keep, tilt } = target;
+  if ([toRotation, turn, keep, tilt].filter((given) => given !== undefined).length > 1)
+    throw new RangeError('a line has one of rotation, turn, keep and tilt');
+  const kind = toRotation || turn ? POSE : keep ? AXIS : tilt !== undefined ? TILT : POSITION;
+  const tilts = kind === TILT ? tiltAxisOf(chain) : null;
+  if (kind === TILT && !(tilts && Number.isFinite(tilt)))
+    throw new RangeError('tilt: this arm has no joint that tilts its tool, or the angle is not finite');
+  // After the tilt axis, whose search moves the chain's frames.
+  const from = forwardKinematics(chain, start);
   const checked = emptyTask();
   const { position, rotation } = from;
   compileTask(
@@ -55,7 +69,10 @@ export function movingTask(from: Transform, target: LineTarget): MovingTask {
     way,
     axis,
     angle,
-    toolAxis: checked.toolAxis,
+    toolAxis: tilts ? Float64Array.from(tilts.toolAxis) : checked.toolAxis,
+    tiltJoint: tilts?.joint ?? 0,
+    tilt: tilts ? tiltOf(chain, tilts.joint, tilts.toolAxis) : 0,
+    tilting: tilt ?? 0,
     baseAxis: checked.baseAxis,
     twist: Float64Array.of(...way, ...axis.map((value) => value * angle)),
     turned: new Float64Array(9),
@@ -70,6 +87,8 @@ export function placeTask(moving: MovingTask, s: number, to: CompiledTask): void
     to.toolAxis[k] = moving.toolAxis[k]!;
     to.baseAxis[k] = moving.baseAxis[k]!;
   }
+  to.tiltJoint = moving.tiltJoint;
+  to.tilt = moving.tilt + s * moving.tilting;
   if (moving.kind === POSE)
     multiply3(rotationAbout(moving.axis, s * moving.angle, moving.turned), moving.from.rotation, to.rotation);
 }

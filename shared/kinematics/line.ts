@@ -1,5 +1,5 @@
 import type { Chain, Vec3 } from './chain';
-import { forwardKinematics, sweepFrames } from './frames';
+import { sweepFrames } from './frames';
 import { type IkMemory, ikMemory } from './ik-memory';
 import { boundedStep, cost, freeStep, normalEquations } from './ik-step';
 import { positionErrorOf, rotationErrorOf, taskError } from './ik-task';
@@ -8,6 +8,8 @@ import { type LineTarget, type MovingTask, movingTask, placeTask } from './line-
 export interface LineOptions {
   /** Even steps of the fraction of the way at which the path is given. */
   samples?: number;
+  /** How long a step may get where it is tight before the line counts as refused, as a fraction of the way. */
+  shortestStep?: number;
 }
 
 /** Why a line cannot be followed, and how far it could. */
@@ -65,8 +67,7 @@ export function followLine(
 ): LineResult {
   const { n } = chain;
   const memory = ikMemory(chain);
-  const start = forwardKinematics(chain, from);
-  const moving = movingTask(start, target);
+  const moving = movingTask(chain, from, target);
   const outside = firstOutside(chain, from);
   if (outside >= 0) return refuse(outside, 0, 'limit');
   const samples = options.samples ?? SAMPLES;
@@ -77,7 +78,7 @@ export function followLine(
   store(path, 0, memory.q, rates);
   const walker: Walker = { chain, memory, moving, rates, at: 0, before: new Float64Array(n) };
   for (let k = 1; k <= samples; k++) {
-    const refusal = walkTo(walker, k / samples);
+    const refusal = walkTo(walker, k / samples, options.shortestStep ?? SHORTEST_STEP);
     if (refusal) return { path: null, refusal };
     store(path, k, memory.q, rates);
   }
@@ -116,7 +117,7 @@ interface Walker {
 }
 
 /** Goes on to fraction `to` in as many steps as it takes. */
-function walkTo(walker: Walker, to: number): LineRefusal | null {
+function walkTo(walker: Walker, to: number, shortest: number): LineRefusal | null {
   const { memory, before, rates } = walker;
   let step = to - walker.at;
   while (walker.at < to) {
@@ -131,7 +132,7 @@ function walkTo(walker: Walker, to: number): LineRefusal | null {
     }
     memory.q.set(before);
     step = (aim - walker.at) / 2;
-    if (step < SHORTEST_STEP) return { ...blocked, fraction: walker.at };
+    if (step < shortest) return { ...blocked, fraction: walker.at };
   }
   return null;
 }

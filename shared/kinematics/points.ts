@@ -90,6 +90,24 @@ export function radiusAboutJoint(chain: Chain, q: ArrayLike<number>, joint: numb
   return Math.sqrt(farthest);
 }
 
+/** Where the modelled points are, three numbers each, m in the base frame. */
+export function pointPlaces(chain: Chain, q: ArrayLike<number>, out?: Float64Array): Float64Array {
+  checkLength(chain, q, 'q');
+  sweepFrames(chain, q);
+  const { frames, points, pointLinks } = chain;
+  const to = out ?? new Float64Array(points.length);
+  for (let k = 0; k < pointLinks.length; k++) {
+    const o = 12 * pointLinks[k]!;
+    for (let r = 0; r < 3; r++)
+      to[3 * k + r] =
+        frames[o + 3 * r]! * points[3 * k]! +
+        frames[o + 3 * r + 1]! * points[3 * k + 1]! +
+        frames[o + 3 * r + 2]! * points[3 * k + 2]! +
+        frames[o + 9 + r]!;
+  }
+  return to;
+}
+
 /** Height of the lowest modelled point above the base frame's xy plane, the bench the arm stands on, m. Allocates nothing. */
 export function lowestPoint(chain: Chain, q: ArrayLike<number>): number {
   checkLength(chain, q, 'q');

@@ -1,5 +1,4 @@
 import { type Chain, fastestPointSpeed } from '../kinematics';
-import type { AxisLimits } from './profile';
 
 /**
  * A straight path in joint space: q(s) = from + s·(to − from)/length for s from 0 to `length`. One law of
@@ -7,6 +6,7 @@ import type { AxisLimits } from './profile';
  * arrives at the same moment. s is the travel of the joint that travels farthest (rad or m).
  */
 export interface JointPath {
+  kind: 'joint';
   from: number[];
   /** dq/ds, each within ±1. */
   direction: number[];
@@ -44,36 +44,5 @@ export function jointPath(
     // With one joint moving, every point keeps its distance to the axis: nothing can be faster between looks.
     if (moving > 1) pointSpeed *= POINT_MARGIN;
   }
-  return { from: Array.from(from).slice(0, n), direction, length, pointSpeed };
-}
-
-/** The joint values at s, clamped to the path's ends. */
-export function alongPath(path: JointPath, s: number, out: number[]): number[] {
-  for (let i = 0; i < path.direction.length; i++) out[i] = path.from[i]! + path.direction[i]! * s;
-  return out;
-}
-
-export interface PathCaps {
-  /** Share of each joint's own speed limit: the lower of ceiling and step speed. */
-  fraction: number;
-  /** Largest speed of the fastest modelled point, m/s; Infinity for none. */
-  pointSpeed: number;
-}
-
-/** Limits of s that keep every joint inside its own velocity, acceleration and jerk limits and the arm inside the caps. */
-export function pathLimits(chain: Chain, path: JointPath, caps: PathCaps): AxisLimits {
-  let velocity = Infinity;
-  let acceleration = Infinity;
-  let jerk = Infinity;
-  for (let i = 0; i < chain.n; i++) {
-    const share = Math.abs(path.direction[i]!);
-    if (share === 0) continue;
-    velocity = Math.min(velocity, (chain.velocity[i]! * caps.fraction) / share);
-    acceleration = Math.min(acceleration, chain.acceleration[i]! / share);
-    jerk = Math.min(jerk, chain.jerk[i]! / share);
-  }
-  if (path.pointSpeed > 0) velocity = Math.min(velocity, caps.pointSpeed / path.pointSpeed);
-  // A path of no length: any limits do, it is over at once.
-  if (velocity === Infinity) return { velocity: 1, acceleration: 1, jerk: 1 };
-  return { velocity, acceleration, jerk };
+  return { kind: 'joint', from: Array.from(from).slice(0, n), direction, length, pointSpeed };
 }

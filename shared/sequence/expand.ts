@@ -60,7 +60,7 @@ export function expandSequence({ steps, poses, model }: ExpansionInput): Expansi
     for (const [index, step] of list.entries()) {
       if (full) return;
       const path = `${prefix}${index + 1}`;
-      if (step.kind === 'goTo') {
+      if (step.kind === 'goTo' || step.kind === 'straightTo') {
         const pose = byId.get(step.poseId);
         if (!pose || pose.deleted) {
           blocks(
@@ -84,6 +84,7 @@ export function expandSequence({ steps, poses, model }: ExpansionInput): Expansi
             stepId: step.id,
             path,
             q: [...pose.q],
+            straight: step.kind === 'straightTo',
             speed: speedFraction(step.speed),
             settle: step.settle,
             label: pose.name,

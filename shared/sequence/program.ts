@@ -11,6 +11,8 @@ export const ProgramStep = z.discriminatedUnion('kind', [
     stepId: z.string(),
     path: z.string(),
     q: z.array(z.number()),
+    /** The tool takes the straight way instead of the joints. */
+    straight: z.boolean(),
     /** Share of each joint's own speed limit; the ceiling still applies. */
     speed: z.number().min(0.01).max(1),
     settle: z.number().min(0),

@@ -6,7 +6,17 @@ import { CEILINGS } from '../arm/trust';
 import { shownValue } from '../arm/units';
 import { inverseDynamics } from '../dynamics';
 import { type Chain, compileChain, fastestPointSpeed } from '../kinematics';
-import { jointPath, pathLimits, planPosition, sampleProfile } from '../motion';
+import {
+  alongPath,
+  jointPath,
+  lineWords,
+  type MotionPath,
+  pathLimits,
+  pathRates,
+  planPosition,
+  sampleProfile,
+  straightPath,
+} from '../motion';
 import type { ProgramStep } from './program';
 
 export interface RehearsalInput {
@@ -107,7 +117,7 @@ class Walk {
       if (share < best) this.nearest = { joint: i, margin, path: step.path };
     }
     const creeping = ceiling <= CEILINGS.creep;
-    const path = jointPath(this.chain, this.q, step.q);
+    const path = this.pathTo(step);
     const limits = pathLimits(this.chain, path, {
       fraction: Math.min(step.speed, ceiling),
       pointSpeed: creeping ? POINT_SPEED_CREEP_M_S : POINT_SPEED_M_S,
@@ -118,16 +128,33 @@ class Walk {
     for (let k = 0; k <= samples && profile.duration > 0; k++) {
       const at = (profile.duration * k) / samples;
       sampleProfile(profile, at, s);
-      for (let i = 0; i < this.chain.n; i++) {
-        this.q[i] = path.from[i]! + path.direction[i]! * s.position;
-        this.qd[i] = path.direction[i]! * s.velocity;
-        this.qdd[i] = path.direction[i]! * s.acceleration;
-      }
+      alongPath(path, s.position, this.q);
+      pathRates(path, s, this.qd, this.qdd);
       this.look(this.t + at, step);
     }
     this.t += profile.duration;
     for (let i = 0; i < this.chain.n; i++) this.q[i] = step.q[i]!;
     if (step.settle > 0) this.stand(step.settle, step);
+  }
+
+  /** Where no straight way leads there the step is blocked, and the rest is rehearsed as if it went by joints. */
+  private pathTo(step: Extract<ProgramStep, { kind: 'goTo' }>): MotionPath {
+    if (!step.straight) return jointPath(this.chain, this.q, step.q);
+    const { path, refusal } = straightPath(
+      this.chain,
+      this.q,
+      step.q,
+      Math.min(step.speed, this.input.ceiling),
+    );
+    if (path) return path;
+    const names = this.input.model.joints.map((joint) => joint.name);
+    this.problem(
+      step,
+      'blocks',
+      'notStraight',
+      `No straight way to “${step.label}”: ${lineWords(names, refusal, true)} Use Go to, or another pose before it.`,
+    );
+    return jointPath(this.chain, this.q, step.q);
   }
 
   private rangeOf(joint: number): number {

@@ -15,6 +15,8 @@ export const GoToStep = z.strictObject({
   /** Time to stand still at the pose before the next step, s. */
   settle: z.number().min(0).max(60).default(0),
 });
+/** As Go to, but the tool takes the straight way. */
+export const StraightToStep = GoToStep.extend({ kind: z.literal('straightTo') });
 export const GripStep = z.strictObject({
   id: StepId,
   kind: z.literal('grip'),
@@ -41,6 +43,7 @@ export const AgainStep = z.strictObject({
 });
 
 export type GoToStep = z.infer<typeof GoToStep>;
+export type StraightToStep = z.infer<typeof StraightToStep>;
 export type GripStep = z.infer<typeof GripStep>;
 export type WaitStep = z.infer<typeof WaitStep>;
 export type RemarkStep = z.infer<typeof RemarkStep>;
@@ -50,13 +53,13 @@ export interface AgainStep {
   times: number;
   steps: Step[];
 }
-export type Step = GoToStep | GripStep | WaitStep | RemarkStep | AgainStep;
+export type Step = GoToStep | StraightToStep | GripStep | WaitStep | RemarkStep | AgainStep;
 export type StepKind = Step['kind'];
 export const Step: z.ZodType<Step> = z.lazy(() =>
-  z.discriminatedUnion('kind', [GoToStep, GripStep, WaitStep, RemarkStep, AgainStep]),
+  z.discriminatedUnion('kind', [GoToStep, StraightToStep, GripStep, WaitStep, RemarkStep, AgainStep]),
 ) as unknown as z.ZodType<Step>;
 
-export const STEP_KINDS = ['goTo', 'grip', 'wait', 'again', 'remark'] as const;
+export const STEP_KINDS = ['goTo', 'straightTo', 'grip', 'wait', 'again', 'remark'] as const;
 
 /** How deep "again" may nest, and how long a cycle may get once expanded. */
 export const MAX_NESTING = 4;

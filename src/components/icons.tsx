@@ -194,6 +194,13 @@ const STEPS: Record<string, ReactNode> = {
       <circle cx="3.4" cy="17.4" r="1.9" {...solid} />
     </>
   ),
+  straightTo: (
+    <>
+      <path d="M4 15 14.5 6.5" strokeWidth="2" />
+      <path d="m17.6 4-1.6 6-4.2-5.2Z" {...solid} />
+      <circle cx="4" cy="15" r="2" {...solid} />
+    </>
+  ),
   grip: (
     <>
       <path d="M5 3v14M15 3v14" strokeWidth="2.4" />

@@ -110,3 +110,26 @@ test('an observer in a second browser sees the arm move, cannot move it, and can
   await ines.waitForTimeout(400);
   expect((await newest(ines)).q[0]).toBe(stopped);
 });
+
+test('an arm process killed in mid-move: the page says so, the arm comes back resting and nothing resumes', async ({
+  as,
+  product,
+}) => {
+  const page = await as('teacher');
+  await openArm(page, 'Heron');
+  await takeControlAndEnergise(page);
+  await declare(page);
+  const button = page.getByRole('button', { name: 'Base turn, right: hold to move' });
+  await holdUntil(page, button.or(page.locator('[data-joint="0"] .held')), async () => {
+    if (!((await page.locator('.c-motors').textContent()) ?? '').includes('moving')) return false;
+    product.killArmProcesses();
+    return true;
+  });
+  await expect(page.getByText(/The control process of Heron ended/).first()).toBeVisible();
+  await expect(page.locator('.c-motors')).toContainText('resting');
+  await expect(page.locator('.c-trust')).toContainText('unknown');
+  // The web side never faltered: the same page is still signed in and asks again.
+  await page.getByRole('link', { name: 'Poses', exact: true }).click();
+  await expect(page.getByRole('heading', { name: 'Poses' })).toBeVisible();
+  product.expectComplaint(/arm process of Heron ended \(SIGKILL\)/);
+});

@@ -129,7 +129,10 @@ function jumping(): Plant {
     spoil: ({ state }) => {
       if (!state.move || state.move.s.velocity === 0) return;
       moving++;
-      if (moving % 500 === 499) state.move.path.from[0] = state.move.path.from[0]! + 0.1;
+      const { path } = state.move;
+      if (moving % 500 !== 499) return;
+      if (path.kind === 'joint') path.from[0] = path.from[0]! + 0.1;
+      else for (let k = 0; k < path.spline.q.length; k += path.spline.n) path.spline.q[k]! += 0.1;
     },
   };
 }

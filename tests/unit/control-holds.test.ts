@@ -197,9 +197,14 @@ describe('while the position is not known', () => {
 describe('a hold is refused, and nothing moves,', () => {
   const cases: [string, string, (rig: Rig) => ReturnType<Rig['send']>][] = [
     [
-      'along the tool, until the arm can do that',
-      'frameNotAvailable',
-      (rig) => press(rig, { kind: 'jog', frame: 'tool', axis: 'x', direction: 1 }),
+      'about an axis that it has not the joints for',
+      'notEnoughJoints',
+      (rig) => press(rig, { kind: 'jog', frame: 'base', axis: 'rx', direction: 1 }),
+    ],
+    [
+      'of the tool by the number of a joint',
+      'wrongAxis',
+      (rig) => press(rig, { kind: 'jog', frame: 'tool', axis: 0, direction: 1 }),
     ],
     ['of a joint that is not there', 'noSuchJoint', (rig) => press(rig, jog(6))],
     [

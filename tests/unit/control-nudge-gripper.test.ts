@@ -63,10 +63,10 @@ describe('a nudge', () => {
     ['of millimetres on a turning joint', 'notANudge', (rig) => nudge(rig, 0, 0.001)],
     ['of a joint that is not there', 'noSuchJoint', (rig) => nudge(rig, 7, deg(1))],
     [
-      'along the tool',
-      'frameNotAvailable',
+      'about an axis that it has not the joints for',
+      'notEnoughJoints',
       (rig) =>
-        rig.send(juno, { type: 'nudge', turn: rig.state.turn, frame: 'tool', axis: 'x', amount: 0.001 }),
+        rig.send(juno, { type: 'nudge', turn: rig.state.turn, frame: 'tool', axis: 'rz', amount: deg(1) }),
     ],
     [
       'that was 300 ms under way',

@@ -39,16 +39,23 @@ function objection(rig: Rig, ticks = 100): string | null {
   return null;
 }
 
+/** The joint path of the move under way. */
+function jointPathOf(rig: Rig) {
+  const { path } = rig.controller.state.move!;
+  if (path.kind !== 'joint') throw new Error('not a joint path');
+  return path;
+}
+
 describe('the supervisor stops the arm before a set-point', () => {
   it('that is not a number', () => {
     const rig = jogging();
-    rig.controller.state.move!.path.from[0] = Number.NaN;
+    jointPathOf(rig).from[0] = Number.NaN;
     expect(objection(rig)).toContain('not a number');
   });
 
   it('that jumps', () => {
     const rig = jogging();
-    rig.controller.state.move!.path.from[0]! += deg(2);
+    jointPathOf(rig).from[0]! += deg(2);
     expect(objection(rig)).toContain('faster than it may');
   });
 
@@ -210,7 +217,7 @@ describe('the supervisor stops the arm before a set-point', () => {
 describe('after the supervisor stopped the arm', () => {
   it('it stands, waits for a builder, and goes on from where the board says it is', () => {
     const rig = jogging();
-    rig.controller.state.move!.path.from[0]! += deg(2);
+    jointPathOf(rig).from[0]! += deg(2);
     rig.tick(100);
     expect(rig.state.fault).toMatchObject({ code: 'supervisor', hard: true });
     expect(rig.send(juno, { type: 'fault.acknowledge', turn: rig.state.turn })?.code).toBe('needsBuilder');

@@ -9,11 +9,14 @@ import { KIND_WORDS } from './step-words';
 
 const KIND_DOES: Record<StepKind, string> = {
   goTo: 'all joints together to a pose',
+  straightTo: 'the tool on a straight line to a pose',
   grip: 'open or close the gripper',
   wait: 'stand still for a time',
   again: 'repeat the steps inside',
   remark: 'words for people',
 };
+
+const needsPose = (kind: StepKind) => kind === 'goTo' || kind === 'straightTo';
 
 /** Ctrl+Z and Ctrl+Shift+Z (or Ctrl+Y), except while somebody types: there the letters come back first. */
 function useUndoKeys(dispatch: (action: Edit) => void): void {
@@ -68,13 +71,13 @@ export function EditTools({
             {kinds.map((kind) => (
               <DropdownMenu.Item
                 key={kind}
-                disabled={kind === 'goTo' && firstPose === null}
+                disabled={needsPose(kind) && firstPose === null}
                 onSelect={() => dispatch({ type: 'insertAll', steps: [usualStep(kind, firstPose ?? '')] })}
               >
                 <StepKindIcon kind={kind} />
                 {KIND_WORDS[kind]}
                 <span className="note">
-                  {kind === 'goTo' && firstPose === null ? 'capture a pose first' : KIND_DOES[kind]}
+                  {needsPose(kind) && firstPose === null ? 'capture a pose first' : KIND_DOES[kind]}
                 </span>
               </DropdownMenu.Item>
             ))}

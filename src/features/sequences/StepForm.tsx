@@ -55,6 +55,7 @@ export function StepForm({
 }) {
   switch (step.kind) {
     case 'goTo':
+    case 'straightTo':
       return (
         <div className="stepform">
           <SelectField label="Pose" value={step.poseId} onChange={(poseId) => onChange({ ...step, poseId })}>
@@ -66,6 +67,14 @@ export function StepForm({
                 {pose.name}
               </option>
             ))}
+          </SelectField>
+          <SelectField
+            label="Way"
+            value={step.kind}
+            onChange={(kind) => onChange({ ...step, kind: kind as 'goTo' | 'straightTo' })}
+          >
+            <option value="goTo">joints together</option>
+            <option value="straightTo">tool straight</option>
           </SelectField>
           <SelectField
             label="Speed"

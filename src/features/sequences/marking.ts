@@ -43,7 +43,7 @@ export function leftAt(
   const after = rows.find((row) => row.step.id === afterId);
   const last = after ? rowsOf([after.step]).at(-1)?.step.id : null;
   for (const { step } of rows) {
-    if (step.kind === 'goTo') q = byId.get(step.poseId)?.q ?? null;
+    if (step.kind === 'goTo' || step.kind === 'straightTo') q = byId.get(step.poseId)?.q ?? null;
     else if (step.kind === 'grip') opening = step.opening;
     if (step.id === last) break;
   }

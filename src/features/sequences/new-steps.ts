@@ -5,6 +5,7 @@ import type { NewStep } from './editing';
 export function usualStep(kind: StepKind, poseId: string): NewStep {
   switch (kind) {
     case 'goTo':
+    case 'straightTo':
       return { kind, poseId, speed: 'easy', settle: 0 };
     case 'grip':
       return { kind, opening: 0 };

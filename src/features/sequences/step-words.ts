@@ -4,6 +4,7 @@ import type { Step, StepKind, StepSpeed } from '../../../shared/sequence/steps';
 
 export const KIND_WORDS: Record<StepKind, string> = {
   goTo: 'Go to',
+  straightTo: 'Straight to',
   grip: 'Grip',
   wait: 'Wait',
   again: 'Again',
@@ -21,13 +22,14 @@ export function sentence(
   model: ArmModel,
 ): { lead: string; about: string; detail: string } {
   switch (step.kind) {
-    case 'goTo': {
+    case 'goTo':
+    case 'straightTo': {
       const pose = poses.find((p) => p.id === step.poseId);
       const settle = step.settle > 0 ? `, settle ${step.settle} s` : '';
       return {
-        lead: 'Go to',
+        lead: KIND_WORDS[step.kind],
         about: pose?.name ?? 'a pose that is gone',
-        detail: `${speedWord(step.speed)}, joints together${settle}`,
+        detail: `${speedWord(step.speed)}, ${step.kind === 'goTo' ? 'joints together' : 'the tool on a line'}${settle}`,
       };
     }
     case 'grip': {

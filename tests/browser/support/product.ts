@@ -48,6 +48,20 @@ export class Product {
     return this.log.slice(1).join('');
   }
 
+  /** `kill -9` for every arm process this product has started. */
+  killArmProcesses(): void {
+    const { pid } = this.child;
+    const children = readFileSync(`/proc/${pid}/task/${pid}/children`, 'utf8').trim().split(' ');
+    for (const child of children) process.kill(Number(child), 'SIGKILL');
+  }
+
+  /** One line of the log that belongs to what the test did. */
+  expectComplaint(line: RegExp): void {
+    const at = this.log.findIndex((text, i) => i > 0 && line.test(text));
+    expect(at, `${line} in the server log`).toBeGreaterThan(0);
+    this.log.splice(at, 1);
+  }
+
   signInOf(role: Role): { email: string; password: string; name: string } {
     const all = JSON.parse(readFileSync(join(this.folder, 'demo-sign-ins.json'), 'utf8')) as {
       role: Role;
