@@ -140,7 +140,7 @@ export function tickHold(arm: Arm, state: ControllerState): void {
   const { kind } = hold.motion;
   if ((kind !== 'jog' && kind !== 'pose' && kind !== 'joints') || !hasArrived(state)) return;
   const end = state.move?.path.kind === 'tool' ? state.move.path.end : null;
-  if (hold.motion.kind === 'jog' && end) state.blocked = blockedBy(arm, end);
+  if (hold.motion.kind === 'jog' && end) state.blocked = blockedBy(end);
   else if (hold.motion.kind === 'jog' && typeof hold.motion.axis === 'number')
     state.blocked = {
       joint: hold.motion.axis,

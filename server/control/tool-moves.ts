@@ -49,7 +49,7 @@ export function moveTool(
   });
   if (!path || path.length < NO_WAY) {
     const why = path ? path.end : end;
-    if (why) state.blocked = blockedBy(arm, why);
+    if (why) state.blocked = blockedBy(why);
     return refusal('atLimit', why ? `No farther: ${inWords(arm, why, !act.asFar)}` : 'No farther that way.');
   }
   if (act.farthest !== undefined && farthestTravel(arm, path) > act.farthest)
@@ -88,9 +88,12 @@ export function inWords(arm: Arm, end: LineEnd, whole: boolean): string {
 }
 
 /** What the page shows at the joint that is in the way. */
-export function blockedBy(arm: Arm, end: LineRefusal): { joint: number; reason: string } {
+export function blockedBy(end: LineRefusal): { joint: number; reason: string } {
   return {
     joint: end.joint,
-    reason: end.reason === 'limit' ? 'at its soft limit' : inWords(arm, end, false),
+    reason:
+      end.reason === 'limit'
+        ? 'at its soft limit'
+        : 'would have to turn faster than it can; the arm is nearly stretched, folded or lined up',
   };
 }

@@ -22,7 +22,7 @@ export {
   sampleLine,
 } from './line';
 export type { LineTarget } from './line-task';
-export { fastestPointSpeed, lowestPoint, pointPlaces, radiusAboutJoint, worstReach } from './points';
+export { fastestPointSpeed, lowestPoint, pointPlaces, radiusAboutJoint, reachOf, worstReach } from './points';
 export { seededRandom } from './random';
 export { rotationAbout, rotationFromRpy, rotationVector } from './rotation';
 export { type Dexterity, dexterity, singularValuesOf } from './singular-values';

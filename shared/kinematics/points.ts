@@ -1,5 +1,6 @@
 import type { Chain } from './chain';
 import { checkLength, sweepFrames } from './frames';
+import { ikMemory } from './ik-memory';
 
 /**
  * Speeds and reaches of the modelled points: link origins, places of the next joints, far ends of links and
@@ -88,6 +89,11 @@ export function radiusAboutJoint(chain: Chain, q: ArrayLike<number>, joint: numb
     farthest = Math.max(farthest, ux * ux + uy * uy + uz * uz);
   }
   return Math.sqrt(farthest);
+}
+
+/** How far the tool point can be from the first joint at most, m: an upper bound over all configurations. */
+export function reachOf(chain: Chain): number {
+  return ikMemory(chain).reach;
 }
 
 /** Where the modelled points are, three numbers each, m in the base frame. */

@@ -1,4 +1,5 @@
 import type { Chain } from './chain';
+import { ikMemory } from './ik-memory';
 import { jacobian } from './jacobian';
 
 /**
@@ -59,6 +60,11 @@ export interface Dexterity {
   translationManipulability: number;
   /** Smallest singular value of the position rows over the largest: 0 (a direction is lost) … 1 (all alike). Fewer than three joints: of as many directions. */
   translationIsotropy: number;
+  /**
+   * The same of all that the tool can do, 0 … 1: how far the arm is from a place where it loses a way to move or
+   * turn its tool. Lengths count in arm lengths; arms with fewer than six joints are judged by the ways they have.
+   */
+  isotropy: number;
 }
 
 /** @see Siciliano et al., Robotics: Modelling, Planning and Control, §3.9 (manipulability ellipsoids) */
@@ -73,5 +79,15 @@ export function dexterity(chain: Chain, q: ArrayLike<number>): Dexterity {
     manipulability: product(singularValues),
     translationManipulability: product(ofPosition),
     translationIsotropy: largest > 0 ? ofPosition[ofPosition.length - 1]! / largest : 0,
+    isotropy: isotropyOf(chain, j),
   };
+}
+
+function isotropyOf(chain: Chain, j: Float64Array): number {
+  const { perLength, unit } = ikMemory(chain);
+  const { n } = chain;
+  const scaled = j.map((value, k) => value * unit[k % n]! * (k < 3 * n ? perLength : 1));
+  const values = singularValuesOf(scaled, 6, n);
+  const ways = Math.min(6, n);
+  return values[0]! > 0 ? values[ways - 1]! / values[0]! : 0;
 }

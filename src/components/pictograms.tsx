@@ -138,6 +138,46 @@ const PICTURES: Record<JointWords['picture'] | 'grip', { positive: ReactNode; ne
   },
 };
 
+/** Arrows for the six ways a tool goes: along three axes and about them, drawn as seen from the corner. */
+const TOOL_WAYS: Record<string, [string, string]> = {
+  x: ['M29 19 11 11', 'm7 9 7-.6-3.2 6.3Z'],
+  y: ['M11 19 29 11', 'm33 9-3.8 5.7L26 8.4Z'],
+  z: ['M20 25V9', 'm20 4 3.8 6.6h-7.6Z'],
+};
+export function ToolPictogram({ axis, direction }: { axis: string; direction: 1 | -1 }) {
+  const [line, head] = TOOL_WAYS[axis.at(-1)!]!;
+  const turns = axis.length === 2;
+  // Positive x comes towards the left front of the picture, positive y goes to the left.
+  const flip = direction > 0 === (axis.at(-1) === 'z');
+  return (
+    <svg
+      viewBox="0 0 40 30"
+      fill="none"
+      stroke="currentColor"
+      strokeWidth={1.75}
+      strokeLinecap="round"
+      strokeLinejoin="round"
+      aria-hidden="true"
+    >
+      {turns ? (
+        <>
+          <path d={line} strokeDasharray="2 3" />
+          <g transform={direction > 0 ? undefined : 'translate(40 0) scale(-1 1)'}>
+            <path d="M9 18.5c0 3 5 5.5 11 5.5s11-2.5 11-5.5" strokeWidth="2" />
+            <path d="m31 12.500 4 6.500h-8Z" {...solid} />
+          </g>
+        </>
+      ) : (
+        <g transform={flip ? undefined : 'rotate(180 20 15)'}>
+          <path d={line} strokeWidth="2.4" />
+          <path d={head} {...solid} />
+          <circle cx="20" cy="15" r="2.6" {...solid} />
+        </g>
+      )}
+    </svg>
+  );
+}
+
 export function Pictogram({ picture, direction }: { picture: keyof typeof PICTURES; direction: 1 | -1 }) {
   return (
     <svg

@@ -34,6 +34,9 @@ export function BottomLine({ model }: { model: ArmModel }) {
   const trust = useArmState((state) => worstTrust(state?.trust ?? []));
   const note = useArmState((state) => state?.trustNote ?? '');
   const run = useArmState((state) => state?.run ?? null);
+  const blocked = useTelemetry((t) =>
+    t?.blocked ? `${model.joints[t.blocked.joint]?.name ?? 'A joint'}: ${t.blocked.reason}` : null,
+  );
   const inControl = useInControl();
   const role = useHello()?.you.role ?? 'observer';
   const [refused, setRefused] = useState<string | null>(null);
@@ -89,6 +92,11 @@ export function BottomLine({ model }: { model: ArmModel }) {
     <>
       {refused ? (
         <Message kind="fault">{refused}</Message>
+      ) : blocked && !run ? (
+        <Message>
+          <b>No farther that way.</b> {blocked}
+          {blocked.endsWith('.') ? '' : '.'}
+        </Message>
       ) : trust === 'unknown' || trust === 'doubtful' ? (
         <Message
           action={

@@ -6,7 +6,7 @@ import { Pictogram } from '../../components/pictograms';
 import { TorqueUsed } from '../../components/TorqueUsed';
 import { TravelBar } from '../../components/TravelBar';
 import { toast } from '../../components/toast';
-import { nudgeJoint } from '../../live/nudge';
+import { sendNudge } from '../../live/nudge';
 import { useArmState, useTelemetry } from '../../live/use-live';
 
 /** Nearer to a soft limit than this a joint is at it, rad or m. */
@@ -47,7 +47,7 @@ export const JointRow = memo(function JointRow({
   });
   const press = (direction: 1 | -1) => () => {
     const amount = (nudge ?? (type === 'revolute' ? Math.PI / 360 : 0.001)) * direction;
-    void nudgeJoint(index, amount).then((outcome) => {
+    void sendNudge('joint', index, amount).then((outcome) => {
       if (!outcome.ok) toast(outcome.message);
     });
   };

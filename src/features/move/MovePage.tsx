@@ -1,8 +1,10 @@
 import './move.css';
 import { useMemo, useState } from 'react';
 import type { Arm } from '../../../shared/api/resources';
+import type { ArmModel } from '../../../shared/arm/model';
 import { shownValue } from '../../../shared/arm/units';
-import { NUDGE_ANGLES, NUDGE_LENGTHS } from '../../../shared/live/client-messages';
+import { compileChain, reachOf, type ToolFrame, toolAxisOffer } from '../../../shared/kinematics';
+import { NUDGE_ANGLES, NUDGE_LENGTHS, TOOL_AXES } from '../../../shared/live/client-messages';
 import { may } from '../../../shared/team/roles';
 import { usePoses } from '../../api/poses';
 import { LockIcon } from '../../components/icons';
@@ -17,6 +19,7 @@ import { JointRow } from './JointRow';
 import { GoToDialog } from './JointValuesDialog';
 import { RecentPoses } from './RecentPoses';
 import { ReferenceButton } from './ReferencePanel';
+import { ToolRow } from './ToolRow';
 
 /** Why the hold buttons cannot be used now, in a word or two; null when they can. */
 function useReason(): string | null {
@@ -37,6 +40,20 @@ function useReason(): string | null {
   return null;
 }
 
+/** What the rows move. */
+type Moves = 'joint' | ToolFrame;
+
+/** The tool axes this arm has the joints for, and what each keeps. */
+function useToolAxes(model: ArmModel, frame: ToolFrame) {
+  return useMemo(() => {
+    const chain = compileChain(model);
+    return TOOL_AXES.flatMap((axis) => {
+      const keeps = toolAxisOffer(chain, frame, axis);
+      return keeps ? [{ axis, keeps }] : [];
+    });
+  }, [model, frame]);
+}
+
 /** Which nudge is chosen: an index into the nudge sizes, or "moves while held". */
 type Press = 'held' | 0 | 1 | 2;
 
@@ -46,6 +63,12 @@ export function MovePage({ arm }: { arm: Arm }) {
   const moving = useArmState((state) => state?.motors === 'moving' || state?.motors === 'stopping');
   const [press, setPress] = useState<Press>('held');
   const [goingTo, setGoingTo] = useState(false);
+  const [moves, setMoves] = useState<Moves>('joint');
+  const toolAxes = useToolAxes(model, moves === 'tool' ? 'tool' : 'base');
+  const reach = useMemo(() => reachOf(compileChain(model)), [model]);
+  const known = useArmState((state) =>
+    (state?.trust ?? ['unknown']).every((trust) => trust === 'declared' || trust === 'referenced'),
+  );
   const poses = usePoses(arm.id).data;
   const poseValues = useMemo(
     () =>
@@ -62,7 +85,7 @@ export function MovePage({ arm }: { arm: Arm }) {
   };
   const locked = reason !== null || moving;
   const lockText = moving ? 'locked while moving' : reason;
-  const sliding = model.joints.some((joint) => joint.type === 'prismatic');
+  const sliding = moves !== 'joint' || model.joints.some((joint) => joint.type === 'prismatic');
   return (
     <main className="sheet move">
       <h1 className="vh">Move {model.name}</h1>
@@ -103,29 +126,51 @@ export function MovePage({ arm }: { arm: Arm }) {
             />
           </div>
           <CeilingControl reason={reason === 'running' ? null : reason} moving={moving} />
-          <div className="c4">
-            <div className="lab">
-              <span>Or</span>
-            </div>
-            <div className="line">
-              <button type="button" className="btn sm" disabled={locked} onClick={() => setGoingTo(true)}>
-                Go to…
-              </button>
-              <ReferenceButton model={model} disabled={locked} />
-            </div>
-          </div>
+        </div>
+        <div className="byline">
+          <span className="lab">Move</span>
+          <Segmented<Moves>
+            label="Move"
+            locked={moving}
+            value={moves}
+            onChange={setMoves}
+            options={[
+              { value: 'joint', label: 'joint by joint' },
+              { value: 'base', label: 'tool along base' },
+              { value: 'tool', label: 'tool along itself' },
+            ]}
+          />
+          <span className="end line">
+            <button type="button" className="btn sm" disabled={locked} onClick={() => setGoingTo(true)}>
+              Go to…
+            </button>
+            <ReferenceButton model={model} disabled={locked} />
+          </span>
         </div>
         <div className="rows">
-          {model.joints.map((joint, i) => (
-            <JointRow
-              key={joint.name}
-              joint={joint}
-              index={i}
-              reason={reason}
-              nudge={nudgeOf(joint.type)}
-              poses={poseValues[i] ?? []}
-            />
-          ))}
+          {moves !== 'joint' &&
+            toolAxes.map(({ axis, keeps }) => (
+              <ToolRow
+                key={`${moves} ${axis}`}
+                frame={moves}
+                axis={axis}
+                keeps={keeps}
+                reason={reason ?? (known ? null : 'not known')}
+                nudge={nudgeOf(axis.length === 2 ? 'revolute' : 'prismatic')}
+                reach={reach}
+              />
+            ))}
+          {moves === 'joint' &&
+            model.joints.map((joint, i) => (
+              <JointRow
+                key={joint.name}
+                joint={joint}
+                index={i}
+                reason={reason}
+                nudge={nudgeOf(joint.type)}
+                poses={poseValues[i] ?? []}
+              />
+            ))}
           {model.gripper && <GripperRow gripper={model.gripper} reason={reason} />}
         </div>
         <div className="bottom">

@@ -5,7 +5,7 @@ import { Pictogram } from '../../components/pictograms';
 import { TravelBar } from '../../components/TravelBar';
 import { toast } from '../../components/toast';
 import { sendCommand } from '../../live/connection';
-import { nudgeJoint } from '../../live/nudge';
+import { sendNudge } from '../../live/nudge';
 import { useArmState, useTelemetry } from '../../live/use-live';
 
 /** One press of a synthetic click, or of assistive technology: a small step, rad or m. */
@@ -52,7 +52,7 @@ function JogRow({ joint, index, reason }: { joint: Joint; index: number; reason:
         atLimit={direction > 0 ? row.atUpper : row.atLower}
         nudge={() => {
           const amount = SMALL[type] * direction;
-          void nudgeJoint(index, amount).then((outcome) => {
+          void sendNudge('joint', index, amount).then((outcome) => {
             if (!outcome.ok) toast(outcome.message);
           });
         }}
