@@ -6,6 +6,7 @@ import { isMoving } from './moves';
 import type { FromArmProcess, ToArmProcess } from './process-messages';
 import { stateMessage, telemetryMessage } from './snapshot';
 import { type Controller, createController, type Incoming, type Outputs } from './state';
+import { warmUp } from './warm-up';
 
 /** One arm's process: the 100 Hz loop around the pure controller, its link, and the web side over IPC. */
 const TICK_S = 0.01;
@@ -46,6 +47,8 @@ class ArmProcess {
       nowS: monotonicS(),
       wallMs: Date.now(),
     });
+    warmUp(open.model);
+    this.deadlineMs = performance.now() + TICK_MS;
     say({ kind: 'ready' });
     this.schedule();
   }

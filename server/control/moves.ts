@@ -17,6 +17,15 @@ function limitsOf(arm: Arm, state: ControllerState, move: Move) {
   return pathLimits(arm.chain, move.path, capsFor(state, move.fraction), move.s.velocity);
 }
 
+/** The same for coming to rest from here: only the stretch that takes counts, and so the arm stops as hard as it may. */
+function stoppingLimits(arm: Arm, state: ControllerState, move: Move) {
+  const limits = limitsOf(arm, state, move);
+  if (move.path.kind === 'joint') return limits;
+  const { position, velocity } = move.s;
+  const stretch = [position, restPosition(move.s, limits)] as const;
+  return pathLimits(arm.chain, move.path, capsFor(state, move.fraction), velocity, stretch);
+}
+
 /** Starts a move of all joints together from where the arm stands to `to`; `fraction` is the speed the act itself asks for. */
 export function startMove(
   arm: Arm,
@@ -51,7 +60,7 @@ export function startOnPath(
 export function replanMove(arm: Arm, state: ControllerState, move: Move): void {
   const start = { ...move.s };
   move.profile = move.ending
-    ? planVelocity(start, 0, limitsOf(arm, state, move))
+    ? planVelocity(start, 0, stoppingLimits(arm, state, move))
     : planPosition(start, move.path.length, limitsOf(arm, state, move));
   move.t = 0;
 }
@@ -89,6 +98,6 @@ export function advanceMove(state: ControllerState, dt: number): void {
 export function stopAt(arm: Arm, state: ControllerState): number[] {
   const { move } = state;
   if (!move || !isMoving(state)) return [...state.q];
-  const rest = restPosition(move.s, limitsOf(arm, state, move));
+  const rest = restPosition(move.s, stoppingLimits(arm, state, move));
   return alongPath(move.path, rest, [...state.q]);
 }

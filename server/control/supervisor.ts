@@ -1,4 +1,4 @@
-import { fastestPointSpeed } from '../../shared/kinematics';
+import { fastestPointSpeed, forwardKinematics } from '../../shared/kinematics';
 import { HOLD_EXPIRY_MS } from '../../shared/live/client-messages';
 import { restPosition } from '../../shared/motion';
 import type { BoardOrder } from './arm-link';
@@ -18,6 +18,8 @@ const REAL_CHANGE = 1e-7;
  * first tick, a joint even keeps its speed for one tick. The third tick in a row has to be slower.
  */
 const MOST_STRIKES = 3;
+/** On a curved path a joint may gain while the whole slows down; that is over as soon as the ramp has its full pull. */
+const MOST_STRIKES_CURVED = 8;
 
 const speed = new Float64Array(16);
 
@@ -76,12 +78,36 @@ export function objection(
   }
   const cap = ceiling.toolSpeed ?? Infinity;
   if (moves && pointSpeed(arm, q, known) > cap * SLACK) tooFast = 'a point of the arm would go too fast';
+  const curved = state.move?.path.kind === 'tool';
+  if (curved && !slowing) slowing = slowsAsAWhole(arm, q, q1, q2);
   // Too fast, or without a cause, the arm may only be on its way to less.
   const wrong =
     !moves || slowing ? null : (tooFast ?? (caused ? null : 'it would move without anybody’s doing'));
   watch.strikes = wrong === null ? 0 : watch.strikes + 1;
-  if (watch.strikes >= MOST_STRIKES) return wrong;
+  if (watch.strikes >= (curved ? MOST_STRIKES_CURVED : MOST_STRIKES)) return wrong;
   return gripperObjection(arm, watch, gripper, dt);
+}
+
+/** Along a straight line of the tool the joints share the way unevenly: taken together, or by its tool point, the arm slows. */
+function slowsAsAWhole(
+  arm: Arm,
+  q: readonly number[],
+  q1: readonly number[],
+  q2: readonly number[],
+): boolean {
+  let now = 0;
+  let before = 0;
+  for (const [i, { limits }] of arm.model.joints.entries()) {
+    now += ((q[i]! - q1[i]!) / limits.velocity) ** 2;
+    before += ((q1[i]! - q2[i]!) / limits.velocity) ** 2;
+  }
+  if (now < before * (1 - REAL_CHANGE)) return true;
+  const p = forwardKinematics(arm.chain, q).position;
+  const p1 = forwardKinematics(arm.chain, q1).position;
+  const p2 = forwardKinematics(arm.chain, q2).position;
+  const way = Math.hypot(p[0] - p1[0], p[1] - p1[1], p[2] - p1[2]);
+  const wayBefore = Math.hypot(p1[0] - p2[0], p1[1] - p2[1], p1[2] - p2[2]);
+  return way < wayBefore * (1 - REAL_CHANGE);
 }
 
 /** Whether a joint loses speed, or at least lets off the acceleration it had; rounding counts as neither. */

@@ -61,10 +61,17 @@ export interface PathCaps {
  * Limits of s that keep every joint inside its own velocity, acceleration and jerk limits and the arm inside the caps.
  *
  * @param going - how fast s runs already, where the motion is under way
+ * @param stretch - the part of the path that counts, from and to in s; a straight joint path is the same everywhere
  */
-export function pathLimits(chain: Chain, path: MotionPath, caps: PathCaps, going = 0): AxisLimits {
+export function pathLimits(
+  chain: Chain,
+  path: MotionPath,
+  caps: PathCaps,
+  going = 0,
+  stretch?: readonly [number, number],
+): AxisLimits {
   if (path.kind === 'tool')
-    return toolPathLimits(chain, path, caps.fraction, caps.pointSpeed, Math.abs(going));
+    return toolPathLimits(chain, path, caps.fraction, caps.pointSpeed, Math.abs(going), stretch);
   let velocity = Infinity;
   let acceleration = Infinity;
   let jerk = Infinity;

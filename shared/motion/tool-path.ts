@@ -157,7 +157,7 @@ export interface LineEnd {
 }
 
 /** An arrival so near is the configuration asked for, rad or m. */
-const ARRIVED = 1e-5;
+const ARRIVED = 1e-6;
 
 /**
  * The straight move of the tool from one configuration to another: its point on the line, its rotation about one
@@ -178,7 +178,11 @@ export function straightPath(
     if (path) {
       splineValue(path.spline, path.length, arrived);
       const off = arrived.findIndex((value, i) => Math.abs(value - to[i]!) > ARRIVED);
-      if (off < 0) return { path, refusal: null };
+      if (off < 0) {
+        // To the last digit: whoever asks where the arm stands gets the pose.
+        path.spline.q.set(Float64Array.from(to), path.spline.segments * chain.n);
+        return { path, refusal: null };
+      }
       farthest = { joint: off, fraction: 1, reason: 'posture' };
     } else if (!farthest || refusal.fraction > farthest.fraction) farthest = refusal;
   }
@@ -369,6 +373,7 @@ const MOST_CURVE = 0.5;
  * @param fraction - share of the joints' speed limits and of the tool's
  * @param pointSpeed - largest speed of the fastest modelled point, m/s
  * @param going - how fast the parameter runs already: when that is more, the curve takes up more too
+ * @param stretch - the part of the path that counts, from and to in the parameter; without it all of it
  */
 export function toolPathLimits(
   chain: Chain,
@@ -376,11 +381,14 @@ export function toolPathLimits(
   fraction: number,
   pointSpeed: number,
   going = 0,
+  stretch?: readonly [number, number],
 ): AxisLimits {
   const { n, segments, step, q, bend } = path.spline;
+  const first = stretch ? Math.min(Math.max(Math.floor(stretch[0] / step), 0), segments - 1) : 0;
+  const after = stretch ? Math.min(Math.max(Math.ceil(stretch[1] / step), first + 1), segments) : segments;
   let velocity = fraction;
   if (path.pointSpeed > 0) velocity = Math.min(velocity, pointSpeed / path.pointSpeed);
-  for (let k = 0; k < segments; k++)
+  for (let k = first; k < after; k++)
     for (let i = 0; i < n; i++) {
       const o = k * n + i;
       const sharpest = Math.max(Math.abs(bend[o]!), Math.abs(bend[o + n]!));
@@ -396,7 +404,7 @@ export function toolPathLimits(
   let acceleration = Number.POSITIVE_INFINITY;
   let jerk = Number.POSITIVE_INFINITY;
   for (let pass = 0; pass < 2; pass++)
-    for (let k = 0; k < segments; k++)
+    for (let k = first; k < after; k++)
       for (let i = 0; i < n; i++) {
         const o = k * n + i;
         const slope = steepest(q, bend, o, n, step);

@@ -1,6 +1,7 @@
 import type { ArmModel } from '../../shared/arm/model';
 import { ModelledPoints } from './modelled-points';
 import {
+  type Cause,
   CREEP,
   NUDGE_POINT_TRAVEL_M,
   type Observation,
@@ -22,6 +23,10 @@ const SLACK = 1e-4;
 const STILL = 1e-7;
 /** Set-points are looked at every tick, so a ramp may seem this many ticks longer than it is. */
 const RAMP_TICKS = 3;
+/** Along a straight line of the tool a ramp may take so much longer than on a straight joint path, */
+const CURVE_SHARE = 1.5;
+/** and a joint may still gain for so many ticks while the tool slows down. */
+const CURVE_TICKS = 8;
 /** A joint that a single-joint motion leaves alone may change by rounding only, rad or m. */
 const UNTOUCHED = 1e-9;
 /** A rest position may differ from the shadow by 1 % of the joint's range or 0.2°, whichever is larger. */
@@ -115,7 +120,7 @@ export class MotionChecker {
   private noteCause(seen: Observation): void {
     const { cause } = seen;
     if (cause.kind === 'none' && (this.cause.kind !== 'none' || this.cause.since !== cause.since)) {
-      this.letGo = this.descent(seen.t);
+      this.letGo = isCurved(this.cause) ? this.curvedDescent(seen.t) : this.descent(seen.t);
       this.promise = this.lastShadow;
     }
     if (cause.kind !== 'none') this.promise = null;
@@ -134,6 +139,15 @@ export class MotionChecker {
 
   private descent(since: number): Descent {
     return { since, ramp: shortestRamp(this.model, this.v, this.a) };
+  }
+
+  /** A straight line of the tool is a curve of the joints: part of every limit goes into the curve. */
+  private curvedDescent(since: number): Descent {
+    const { duration, rising } = shortestRamp(this.model, this.v, this.a);
+    return {
+      since,
+      ramp: { duration: CURVE_SHARE * duration, rising: CURVE_SHARE * rising + CURVE_TICKS * this.dt },
+    };
   }
 
   /** Whether something that became too fast by a lower ceiling is still coming down in time, and does. */
@@ -211,9 +225,9 @@ export class MotionChecker {
       if (cause.joint !== null && cause.joint !== j) {
         if (travel > UNTOUCHED)
           this.object('conditions', seen.t, `${joint.name} moves though another joint was asked for`);
-      } else if (cause.kind === 'nudge')
+      } else if (cause.kind === 'nudge' && cause.joint !== null)
         this.rate('nudgeTravel', travel / Math.abs(cause.amount), seen, joint.name);
-      else if (cause.motion === 'jog' && !seen.known.every(Boolean)) {
+      else if (cause.kind === 'hold' && cause.motion === 'jog' && !seen.known.every(Boolean)) {
         const most = joint.type === 'prismatic' ? UNKNOWN_TRAVEL_M : UNKNOWN_TRAVEL_RAD;
         this.rate('unknownTravel', travel / most, seen, joint.name);
       }
@@ -268,4 +282,11 @@ function pointLimit(seen: Observation): number {
   const known = seen.known.every(Boolean);
   if (known && seen.peopleClear && seen.ceiling === 1) return Infinity;
   return known && seen.ceiling > CREEP + 1e-9 ? POINT_SPEED_M_S : POINT_SPEED_CREEP_M_S;
+}
+
+/** Whether the motion was a line of the tool, which bends the way of the joints. */
+function isCurved(cause: Cause): boolean {
+  if (cause.kind === 'none') return false;
+  if (cause.kind === 'run') return cause.curved;
+  return cause.joint === null && (cause.kind === 'nudge' || cause.motion === 'jog');
 }

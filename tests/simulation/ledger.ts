@@ -65,7 +65,8 @@ export class Ledger {
   private control: { actor: Actor; awaySinceS: number | null } | null = null;
   private request: { actor: Actor; dueS: number } | null = null;
   private hold: HoldEntry | null = null;
-  private nudge: { joint: number; amount: number; from: readonly number[]; moved: boolean } | null = null;
+  private nudge: { joint: number | null; amount: number; from: readonly number[]; moved: boolean } | null =
+    null;
   private run: RunEntry | null = null;
   private unattended = false;
   private mayBeEnergised: boolean[];
@@ -166,9 +167,7 @@ export class Ledger {
       case 'hold.start':
         return this.holdStarted(actor, message, shown);
       case 'nudge':
-        this.checkReady(message.type, shown, Number(message.axis), message.seenT);
-        if (typeof message.axis === 'number')
-          this.nudge = { joint: message.axis, amount: message.amount, from: this.q, moved: false };
+        this.nudged(message, shown);
         return;
       case 'run.start':
         this.checkReady(message.type, shown);
@@ -217,6 +216,8 @@ export class Ledger {
     this.checkReady(`hold of ${motion.kind}`, shown, jointOf(motion), message.seenT);
     if ((motion.kind === 'pose' || motion.kind === 'joints') && !isKnown(shown.page.trust))
       this.object(`hold of ${motion.kind} was done with the position unknown`);
+    if (motion.kind === 'jog' && jointOf(motion) === null && !isKnown(shown.page.trust))
+      this.object('the tool was jogged with the position unknown');
     if (motion.kind === 'run' && (!this.run || this.run.paused || this.run.proven))
       this.object('a run was held that does not wait for it');
     this.nudge = null;
@@ -229,6 +230,15 @@ export class Ledger {
       lastKeepS: shown.t,
       moved: false,
     };
+  }
+
+  /** Of a joint, or of the tool, which needs all joints and their places. */
+  private nudged(message: Extract<ClientMessage, { type: 'nudge' }>, shown: Shown): void {
+    const joint = typeof message.axis === 'number' ? message.axis : null;
+    this.checkReady(message.type, shown, joint, message.seenT);
+    if (joint === null && !isKnown(shown.page.trust))
+      this.object('the tool was nudged with the position unknown');
+    this.nudge = { joint, amount: message.amount, from: this.q, moved: false };
   }
 
   private runStarted(
@@ -374,6 +384,8 @@ export class Ledger {
     const { q, records } = shown;
     const { run } = this;
     if (!run) return;
+    // A run may always pause by itself, for instance where no straight way leads to its next pose.
+    if (shown.page.run?.phase === 'paused') run.paused = true;
     const stops = run.program.steps.filter((s) => s.kind === 'goTo');
     const there = (i: number) => stops[i]!.q.every((value, j) => Math.abs(value - q[j]!) < ARRIVED);
     while (this.rests(shown) && run.next < stops.length && there(run.next)) {
@@ -420,9 +432,10 @@ export class Ledger {
     }
     if (nudge) return { kind: 'nudge', joint: nudge.joint, amount: nudge.amount, from: nudge.from };
     if (!run || run.paused) return null;
-    if (!run.proven) return hold ? { kind: 'run' } : null;
+    const curved = run.program.steps.some((s) => s.kind === 'goTo' && s.straight);
+    if (!run.proven) return hold ? { kind: 'run', curved } : null;
     const counted = run.goAtS !== null && t >= run.goAtS;
-    return counted && run.stepAllowed ? { kind: 'run' } : null;
+    return counted && run.stepAllowed ? { kind: 'run', curved } : null;
   }
 }
 

@@ -64,6 +64,8 @@ function shorter(model: ArmModel): ArmModel {
       ...joint,
       origin: { ...joint.origin, xyz: shrink(joint.origin.xyz) },
       link: { ...joint.link, end: shrink(joint.link.end) },
+      // Few joints are quick enough to bring a point to its limit by themselves.
+      limits: { ...joint.limits, velocity: 3 * joint.limits.velocity },
     })),
   };
 }

@@ -15,7 +15,15 @@ export function randomProgram(
     if (kind < 0.3 && model.gripper) return { kind: 'grip', ...base, opening: random() };
     const speed = Math.max(0.01, random() < 0.5 ? 1 : random());
     const settle = random() < 0.5 ? 0 : 0.3 * random();
-    return { kind: 'goTo', ...base, q: somewhere(), straight: false, speed, settle, label: 'Somewhere' };
+    return {
+      kind: 'goTo',
+      ...base,
+      q: somewhere(),
+      straight: random() < 0.4,
+      speed,
+      settle,
+      label: 'Somewhere',
+    };
   });
   return {
     runId: `run-${id}`,

@@ -32,8 +32,9 @@ export interface Observation {
 
 export type Cause =
   | { kind: 'hold'; motion: HoldMotion['kind']; joint: number | null; from: readonly number[] }
-  | { kind: 'nudge'; joint: number; amount: number; from: readonly number[] }
-  | { kind: 'run' }
+  | { kind: 'nudge'; joint: number | null; amount: number; from: readonly number[] }
+  /** `curved`: some of its steps go straight to their pose. */
+  | { kind: 'run'; curved: boolean }
   /** Nothing may move it; `since` is the tick that took the last cause away. */
   | { kind: 'none'; since: number };
 

@@ -6,6 +6,7 @@ import {
   type HoldMotion,
   NUDGE_ANGLES,
   NUDGE_LENGTHS,
+  TOOL_AXES,
 } from '../../shared/live/client-messages';
 import type { Role } from '../../shared/team/roles';
 import { TICK_S } from '../support/rig';
@@ -23,6 +24,8 @@ const LONGEST_AWAY_S = 15;
 /** Somebody who has nothing to do looks up again after at most this long, s. */
 const LONGEST_PAUSE_S = 2.5;
 /** How far a go-to leads at most, as a share of a joint's range. */
+/** How often a press is for the tool and not for a joint. */
+const TOOL_SHARE = 0.35;
 const GO_TO_SHARE = 0.25;
 
 type WithoutId<M> = M extends { id: string } ? Omit<M, 'id'> : never;
@@ -237,10 +240,24 @@ export class User {
 
   private jog(): void {
     const direction = this.random() < 0.5 ? 1 : -1;
+    if (this.random() < TOOL_SHARE) return void this.hold({ kind: 'jog', ...this.toolAxis(), direction });
     this.hold({ kind: 'jog', frame: 'joint', axis: this.joint(), direction });
   }
 
+  private toolAxis() {
+    const frame = this.random() < 0.5 ? ('base' as const) : ('tool' as const);
+    return { frame, axis: TOOL_AXES[Math.floor(this.random() * TOOL_AXES.length)]! };
+  }
+
   private nudge(): void {
+    if (this.random() < TOOL_SHARE) {
+      const way = this.toolAxis();
+      const sizes = way.axis.length === 2 ? NUDGE_ANGLES : NUDGE_LENGTHS;
+      const size = sizes[Math.floor(this.random() * sizes.length)]!;
+      const amount = this.random() < 0.5 ? size : -size;
+      this.send({ type: 'nudge', turn: this.turn, ...way, amount, ...this.seen() });
+      return;
+    }
     const axis = this.joint();
     const sizes = this.model.joints[axis]!.type === 'revolute' ? NUDGE_ANGLES : NUDGE_LENGTHS;
     const size = this.random() < 0.1 ? this.random() : sizes[Math.floor(this.random() * sizes.length)]!;
