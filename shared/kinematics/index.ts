@@ -26,5 +26,5 @@ export { fastestPointSpeed, lowestPoint, pointPlaces, radiusAboutJoint, reachOf,
 export { seededRandom } from './random';
 export { rotationAbout, rotationFromRpy, rotationVector } from './rotation';
 export { type Dexterity, dexterity, singularValuesOf } from './singular-values';
-export { toolTilt } from './tilt';
+export { type TiltAxis, tiltAxisOf, toolTilt } from './tilt';
 export { type ToolAxis, type ToolFrame, type ToolKeeps, toolAxisOffer, toolLine } from './tool-axes';

@@ -13,6 +13,7 @@ import { colourMaterials, makeInkMaterials } from './ink/materials';
 import { InksContext, useReadInks } from './inks';
 import { CameraRig } from './sheet/CameraRig';
 import { DriveSheet } from './sheet/DriveSheet';
+import { type GhostDrag, GhostHandles, GhostProbe, noGhostEye } from './sheet/GhostHandles';
 import { noSheetElements, SheetLines } from './sheet/SheetLines';
 import type { SceneSource } from './source';
 import type { View } from './views';
@@ -30,6 +31,8 @@ interface Props {
   /** A drag has turned the view. */
   onTurned?: () => void;
   antialias?: boolean;
+  /** A ghost of the tool to be dragged. */
+  ghost?: GhostDrag | null;
 }
 
 /** The arm as a drawing in three dimensions. Numbers and Stop never depend on it. */
@@ -69,6 +72,7 @@ function Drawing({
   showTruth = false,
   onTurned,
   antialias = true,
+  ghost = null,
   onLost,
 }: Props & { onLost: (lost: boolean) => void }) {
   const inks = useReadInks();
@@ -82,6 +86,7 @@ function Drawing({
     [materials],
   );
   const elements = useRef(noSheetElements());
+  const eye = useRef(noGhostEye());
   const alive = useRef(true);
   useEffect(() => {
     alive.current = true;
@@ -118,6 +123,7 @@ function Drawing({
           <InkMaterialsContext.Provider value={materials}>
             <CameraRig model={model} view={view} source={source} onTurned={() => onTurned?.()} />
             <DrawOnSamples source={source} />
+            {ghost && <GhostProbe drag={ghost} eye={eye} />}
             <Floor model={model} />
             {known && <GroundShadow model={model} source={source} />}
             <Bench objects={model.bench} />
@@ -133,6 +139,7 @@ function Drawing({
         </InksContext.Provider>
       </Canvas>
       <SheetLines elements={elements} />
+      {ghost && <GhostHandles drag={ghost} eye={eye} />}
     </>
   );
 }

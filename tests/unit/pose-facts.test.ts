@@ -69,7 +69,7 @@ describe('what the arm says about a pose', () => {
 
   it('says of a pose with other joints only that it does not fit', () => {
     const facts = poseFacts(heron, { q: [0, 0], gripper: null });
-    expect(facts).toEqual({ fits: false, beyond: [], nearest: null, torque: null });
+    expect(facts).toEqual({ fits: false, beyond: [], nearest: null, torque: null, freedom: null });
   });
 
   it('puts what is wrong on the card before what a person wrote', () => {

@@ -1,10 +1,14 @@
 import { lazy, Suspense, useMemo, useState } from 'react';
 import type { ArmModel } from '../../../shared/arm/model';
 import { figure, radToDeg } from '../../../shared/arm/units';
+import { compileChain } from '../../../shared/kinematics';
+import { freedomOf, freedomWord } from '../../components/freedom';
 import { Segmented } from '../../components/Segmented';
 import { latestTelemetry, onTelemetry, useLiveStore } from '../../live/live-store';
 import { useArmState, useConnection, useTelemetry } from '../../live/use-live';
 import type { View } from '../../scene/views';
+import { type Ghost, moveGhost } from './ghost-pose';
+import { useGhost } from './use-ghost';
 
 const ArmScene = lazy(() => import('../../scene/ArmScene'));
 
@@ -20,11 +24,26 @@ export function ArmView({ model }: { model: ArmModel }) {
       sample: () => {
         const telemetry = latestTelemetry();
         const gripper = useLiveStore.getState().state?.gripper?.opening ?? null;
-        return telemetry ? { ...telemetry, gripper } : null;
+        if (!telemetry) return null;
+        const { ghost } = useGhost.getState();
+        // A ghost is drawn as what is meant, like the target of a move.
+        return { ...telemetry, gripper, target: telemetry.target ?? ghost?.q };
       },
       subscribe: onTelemetry,
     }),
     [],
+  );
+  const chain = useMemo(() => compileChain(model), [model]);
+  const placing = useGhost((state) => state.ghost !== null);
+  const handles = useMemo(
+    () => ({
+      position: () => useGhost.getState().ghost?.position ?? null,
+      move: (position: Ghost['position']) => {
+        const { ghost } = useGhost.getState();
+        if (ghost) useGhost.setState({ ghost: moveGhost(chain, ghost, { position }) });
+      },
+    }),
+    [chain],
   );
   return (
     <section className={`pane view ${lost ? 'stale' : ''}`} aria-label="The arm">
@@ -50,8 +69,10 @@ export function ArmView({ model }: { model: ArmModel }) {
             source={source}
             known={known}
             showTruth={showTruth && builtIn}
+            ghost={placing ? handles : null}
           />
         </Suspense>
+        {known && <Freedom model={model} />}
         {!known && (
           <p className="stage-note">
             <b>Position unknown</b>
@@ -121,5 +142,23 @@ function ToolLine({ known }: { known: boolean }) {
       <span className="n">{figure(tool.up, 0)} mm</span> up,{' '}
       <span className="n">{figure(Math.abs(tool.left), 1)}°</span> {tool.left >= 0 ? 'left' : 'right'}
     </span>
+  );
+}
+
+/** How far stretched and how free: what a straight line of the tool runs into. */
+function Freedom({ model }: { model: ArmModel }) {
+  const freedom = useMemo(() => freedomOf(model), [model]);
+  const now = useTelemetry((t) => {
+    if (!t || t.q.length !== model.joints.length) return null;
+    const { stretched, isotropy } = freedom(t.q);
+    return { stretched: Math.round(stretched * 100), word: freedomWord(isotropy) };
+  }, 5);
+  if (!now) return null;
+  return (
+    <p className="stage-note facts">
+      stretched <span className="n">{now.stretched} %</span> of its reach
+      <br />
+      freedom of the tool <b>{now.word}</b>
+    </p>
   );
 }

@@ -14,6 +14,7 @@ import { ArmView } from './ArmView';
 import { BottomLine } from './BottomLine';
 import { CeilingControl } from './CeilingControl';
 import { GamepadHold } from './GamepadHold';
+import { GhostRows } from './GhostRows';
 import { GripperRow } from './GripperRow';
 import { JointRow } from './JointRow';
 import { GoToDialog } from './JointValuesDialog';
@@ -41,7 +42,7 @@ function useReason(): string | null {
 }
 
 /** What the rows move. */
-type Moves = 'joint' | ToolFrame;
+type Moves = 'joint' | ToolFrame | 'ghost';
 
 /** The tool axes this arm has the joints for, and what each keeps. */
 function useToolAxes(model: ArmModel, frame: ToolFrame) {
@@ -138,6 +139,7 @@ export function MovePage({ arm }: { arm: Arm }) {
               { value: 'joint', label: 'joint by joint' },
               { value: 'base', label: 'tool along base' },
               { value: 'tool', label: 'tool along itself' },
+              { value: 'ghost', label: 'a ghost first' },
             ]}
           />
           <span className="end line">
@@ -148,7 +150,8 @@ export function MovePage({ arm }: { arm: Arm }) {
           </span>
         </div>
         <div className="rows">
-          {moves !== 'joint' &&
+          {moves === 'ghost' && <GhostRows model={model} reason={reason} known={known} />}
+          {(moves === 'base' || moves === 'tool') &&
             toolAxes.map(({ axis, keeps }) => (
               <ToolRow
                 key={`${moves} ${axis}`}

@@ -6,6 +6,7 @@ import { shownValue } from '../../../shared/arm/units';
 import { may } from '../../../shared/team/roles';
 import { errorText } from '../../api/client';
 import { useDeletePose, useUndeletePose } from '../../api/poses';
+import { freedomWord } from '../../components/freedom';
 import { Silhouette } from '../../components/Silhouette';
 import { toast } from '../../components/toast';
 import { useArmState, useHello, useTelemetry } from '../../live/use-live';
@@ -114,7 +115,7 @@ function Facts({ arm, pose, known }: { arm: Arm; pose: Pose; known: boolean }) {
     () => (known && from && ceiling !== null && facts.fits ? timeToGo(model, from, pose.q, ceiling) : null),
     [known, from, ceiling, facts.fits, model, pose.q],
   );
-  const { nearest, torque, beyond } = facts;
+  const { nearest, torque, beyond, freedom } = facts;
   const past = beyond[0];
   const nearJoint = nearest && model.joints[nearest.joint];
   const tight =
@@ -150,6 +151,14 @@ function Facts({ arm, pose, known }: { arm: Arm; pose: Pose; known: boolean }) {
             </b>
           </li>
         )
+      )}
+      {freedom && (
+        <li className={freedomWord(freedom.isotropy) === 'tight' ? 'w' : ''}>
+          Freedom
+          <b>
+            {freedomWord(freedom.isotropy)}, stretched <span className="n">{percent(freedom.stretched)}</span>
+          </b>
+        </li>
       )}
       <li>
         {ORIGIN_WORDS[pose.origin]}, {pose.trust}

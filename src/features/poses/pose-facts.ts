@@ -7,6 +7,7 @@ import { shownValue } from '../../../shared/arm/units';
 import { gravityTorques } from '../../../shared/dynamics';
 import { type Chain, compileChain } from '../../../shared/kinematics';
 import { jointPath, pathLimits, planPosition } from '../../../shared/motion';
+import { freedomOf, freedomWord } from '../../components/freedom';
 
 /** What today's arm says about a pose. */
 export interface PoseFacts {
@@ -18,6 +19,8 @@ export interface PoseFacts {
   nearest: { joint: number; margin: number; side: 'lower' | 'upper' } | null;
   /** Joint that uses the largest share of its torque to stand there (1 = all), with what the fingers carry. */
   torque: { joint: number; used: number } | null;
+  /** How far stretched, and how far from losing a way to move the tool, 0 to 1. */
+  freedom: { stretched: number; isotropy: number } | null;
 }
 
 const AT_LIMIT = 1e-9;
@@ -34,9 +37,20 @@ function chainOf(model: ArmModel): Chain {
   return chain;
 }
 
+const freedoms = new WeakMap<ArmModel, ReturnType<typeof freedomOf>>();
+function freedomOfModel(model: ArmModel): ReturnType<typeof freedomOf> {
+  let freedom = freedoms.get(model);
+  if (!freedom) {
+    freedom = freedomOf(model);
+    freedoms.set(model, freedom);
+  }
+  return freedom;
+}
+
 export function poseFacts(model: ArmModel, pose: Pick<Pose, 'q' | 'gripper'>): PoseFacts {
   const { q, gripper } = pose;
-  if (q.length !== model.joints.length) return { beyond: [], fits: false, nearest: null, torque: null };
+  if (q.length !== model.joints.length)
+    return { beyond: [], fits: false, nearest: null, torque: null, freedom: null };
   const beyond: number[] = [];
   let nearest: PoseFacts['nearest'] = null;
   let least = Infinity;
@@ -59,7 +73,7 @@ export function poseFacts(model: ArmModel, pose: Pick<Pose, 'q' | 'gripper'>): P
     const used = Math.abs(tau[i]!) / availableTorque(joint.drive, 0);
     if (!torque || used > torque.used) torque = { joint: i, used };
   }
-  return { beyond, fits: true, nearest, torque };
+  return { beyond, fits: true, nearest, torque, freedom: freedomOfModel(model)(q) };
 }
 
 /** The one note of a card: what is wrong before what a person wrote before what it costs. */
@@ -77,6 +91,8 @@ export function cardNote(
     return { text: nearLimitText(model, nearest), warns: true };
   if (torque && torque.used >= 0.8)
     return { text: `Torque used ${percent(torque.used)} · ${torqueWord(torque.used)}`, warns: true };
+  if (facts.freedom && freedomWord(facts.freedom.isotropy) === 'tight')
+    return { text: `Freedom tight, stretched ${percent(facts.freedom.stretched)}`, warns: true };
   if (pose.trust === 'declared' && pose.origin === 'captured')
     return { text: 'Position was only declared when captured', warns: true };
   if (pose.note) return { text: pose.note, warns: false };

@@ -43,15 +43,19 @@ export function CameraRig({
   const probe = useMemo(() => new Vector3(), []);
 
   const armPoints = () => {
-    const q = source.sample()?.q;
-    if (!q || q.length !== chain.n) return [];
-    return skeleton(chain, q).flatMap(([x, y, z]): Vec[] =>
-      [-around, around].flatMap((d): Vec[] => [
-        [x + d, y, z],
-        [x, y + d, z],
-        [x, y, z + d],
-      ]),
-    );
+    const sample = source.sample();
+    const postures = [sample?.q, sample?.target].filter(
+      (q) => q?.length === chain.n,
+    ) as (readonly number[])[];
+    return postures
+      .flatMap((q) => skeleton(chain, q))
+      .flatMap(([x, y, z]): Vec[] =>
+        [-around, around].flatMap((d): Vec[] => [
+          [x + d, y, z],
+          [x, y + d, z],
+          [x, y, z + d],
+        ]),
+      );
   };
   const aim = (at: View, points: readonly Vec[]) => {
     if (!(camera instanceof OrthographicCamera)) return;
