@@ -1,5 +1,6 @@
 /** The motion part of the public maths API: outside programs import it from here. */
 
+export { blendPaths } from './blend';
 export { type JointPath, jointPath } from './joint-path';
 export { lineWords } from './line-words';
 export { alongPath, type MotionPath, type PathCaps, pathLimits, pathMoves, pathRates } from './path';

@@ -220,7 +220,7 @@ interface Pace {
   seconds: Float64Array;
 }
 
-function paceOf(chain: Chain, line: LinePath, fraction: number, asFar: boolean): Pace {
+export function paceOf(chain: Chain, line: LinePath, fraction: number, asFar: boolean): Pace {
   const { n } = chain;
   const { samples, tangent, q } = line;
   const open = Math.max(line.length / LINE_SPEED_M_S, line.angle / TURN_SPEED_RAD_S, NOTHING);
@@ -301,7 +301,7 @@ function slowPlace(chain: Chain, line: LinePath, pace: Pace): { at: number; join
 }
 
 /** The first `last` samples of a line, with the time at full ceiling as parameter. */
-function inTime(
+export function inTime(
   chain: Chain,
   line: LinePath,
   pace: Pace,
