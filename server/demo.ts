@@ -75,26 +75,33 @@ function seedHeron(context: Context): void {
     })),
   );
   const idOf = (name: string) => poses.find((pose) => pose.name === name)!.id;
-  const goTo = (id: string, pose: string, speed: 'creep' | 'easy' | 'full' = 'full'): Step => ({
+  const goTo = (id: string, pose: string): Step => ({
     id,
     kind: 'goTo',
     poseId: idOf(pose),
-    speed,
+    speed: 'full',
+    settle: 0,
+  });
+  const straightTo = (id: string, pose: string): Step => ({
+    id,
+    kind: 'straightTo',
+    poseId: idOf(pose),
+    speed: 'easy',
     settle: 0,
   });
   const steps: Step[] = [
     goTo('s1', 'Hand clear'),
     { id: 's2', kind: 'grip', opening: 0.9 },
     goTo('s3', 'Above tray'),
-    goTo('s4', 'In tray A1', 'easy'),
+    straightTo('s4', 'In tray A1'),
     { id: 's5', kind: 'grip', opening: 0.36 },
-    goTo('s6', 'Above tray', 'easy'),
+    straightTo('s6', 'Above tray'),
     goTo('s7', 'Above scale'),
-    goTo('s8', 'On scale', 'easy'),
+    straightTo('s8', 'On scale'),
     { id: 's9', kind: 'grip', opening: 0.9 },
     { id: 's10', kind: 'wait', seconds: 2 },
     { id: 's11', kind: 'remark', text: 'Juno notes the weight.' },
-    goTo('s12', 'Above scale', 'easy'),
+    straightTo('s12', 'Above scale'),
     goTo('s13', 'Hand clear'),
   ];
   const saved = context.sequences.add(

@@ -1,7 +1,10 @@
 import type { Page } from '@playwright/test';
+import { DEMO_ARMS } from '../../shared/arm/demo-arms';
+import { compileChain, forwardKinematics } from '../../shared/kinematics';
 import { holdUntil } from './support/hold-until';
 import { expect, test } from './support/product';
 import {
+  armState,
   atRest,
   declare,
   newest,
@@ -105,3 +108,73 @@ test('a ghost of the tool is dragged, shows whether it can be reached, and is go
     return qd.every((v) => v === 0) && Math.abs(tool.position[2]! - wanted) < 2e-4;
   });
 });
+
+test('a step straight to a pose stays on its line while it is let go, gone on with, slowed and stopped', async ({
+  as,
+}) => {
+  test.setTimeout(300_000);
+  const page = await as('teacher');
+  await ready(page, 'Heron');
+  const made = await page.evaluate(async () => {
+    const armId = /arms\/([^/]+)/.exec(location.pathname)![1];
+    const get = async (path: string) => (await (await fetch(`/api/arms/${armId}/${path}`)).json()) as unknown;
+    const poses = (await get('poses')) as { id: string; name: string; q: number[] }[];
+    const named = (name: string) => poses.find((pose) => pose.name === name)!;
+    const [above, tray] = [named('Above tray'), named('In tray A1')];
+    const step = (kind: string, poseId: string) => ({ id: kind, kind, poseId, speed: 'full', settle: 0 });
+    const answer = await fetch(`/api/arms/${armId}/sequences`, {
+      method: 'POST',
+      headers: { 'content-type': 'application/json' },
+      body: JSON.stringify({
+        name: 'Straight down',
+        note: '',
+        steps: [step('goTo', above.id), step('straightTo', tray.id)],
+      }),
+    });
+    return { status: answer.status, above: above.q, tray: tray.q };
+  });
+  expect(made.status).toBe(201);
+  await page.getByRole('link', { name: 'Sequences', exact: true }).click();
+  await page.getByRole('link', { name: 'Straight down' }).click();
+  await expect(page.getByRole('list', { name: 'Steps' })).toContainText('Straight to In tray A1');
+  await page.getByRole('button', { name: /^Run\s*first cycle held/ }).click();
+  const button = page.locator('.run .go', { hasText: /Hold to run|let go to stop/ });
+  const chain = compileChain(DEMO_ARMS.heron);
+  const toolAt = (q: readonly number[]) => forwardKinematics(chain, q).position as Place;
+  const [from, to] = [[...toolAt(made.above)] as Place, [...toolAt(made.tray)] as Place];
+  const length = Math.hypot(...to.map((value, k) => value - from[k]!));
+  const shareOf = (p: Place) =>
+    p.reduce((sum, value, k) => sum + ((value - from[k]!) * (to[k]! - from[k]!)) / length ** 2, 0);
+  const onLine = async (share: number) => {
+    const { stepPath } = (await armState(page)).run ?? { stepPath: '' };
+    return stepPath === '2' && shareOf(await place(page)) > share;
+  };
+  // Let go in the middle, hold again, then Stop on the way.
+  await holdUntil(page, button, () => onLine(0.2), 120_000);
+  await atRest(page);
+  await setLiveCeiling(page, 'creep');
+  await holdUntil(page, button, () => onLine(0.45), 120_000);
+  await page.keyboard.press('Escape');
+  await expect.poll(async () => (await armState(page)).stop?.by).toBe('Ines');
+  await atRest(page);
+  // What was sent between the poses never left the line by more than 0.1 mm.
+  const line = (await samples(page))
+    .map(({ tool }) => tool.position as Place)
+    .filter((p) => shareOf(p) > 0.02 && shareOf(p) < 0.98 && offLine(p, from, to) < 0.02);
+  expect(line.length).toBeGreaterThan(20);
+  expect(Math.max(...line.slice(-20).map((p) => offLine(p, from, to)))).toBeLessThan(1e-4);
+  expect(shareOf(line.at(-1)!)).toBeGreaterThan(0.4);
+});
+
+function offLine(p: Place, from: Place, to: Place): number {
+  const way = to.map((value, k) => value - from[k]!);
+  const length = Math.hypot(...way);
+  const d = p.map((value, k) => value - from[k]!);
+  const along = d.reduce((sum, value, k) => sum + (value * way[k]!) / length, 0);
+  return Math.sqrt(Math.max(0, d.reduce((sum, value) => sum + value * value, 0) - along * along));
+}
+
+/** The ceiling of a run under way. */
+async function setLiveCeiling(page: Page, name: string): Promise<void> {
+  await page.getByRole('group', { name: 'Ceiling', exact: true }).getByRole('button', { name }).click();
+}
