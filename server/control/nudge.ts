@@ -32,7 +32,14 @@ export function nudge(
   if (state.run) return refusal('running', 'End the run first.');
   if (frame !== 'joint' && typeof axis === 'string') {
     const no = mayMove(arm, state) ?? nudgeTool(arm, state, frame, axis, amount);
-    if (!no) audit(state, outputs, actor, 'nudge', `tool, ${frame} ${axis} by ${amount}`);
+    if (!no)
+      audit(
+        state,
+        outputs,
+        actor,
+        'nudge',
+        `tool along or about ${frame} ${axis} by ${shownValue(axis.length === 2 ? 'revolute' : 'prismatic', amount)}`,
+      );
     return no;
   }
   if (frame !== 'joint' || typeof axis !== 'number')

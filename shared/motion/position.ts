@@ -1,5 +1,5 @@
 import { type AxisLimits, type AxisState, addPhase, beginProfile, checkAxis, type Profile } from './profile';
-import { risingRoot } from './root';
+import { risingRoot, risingRootNewton, type Sloped } from './root';
 import { addVelocityChange, changeVelocity, newVelocityChange, restPosition } from './velocity';
 
 /**
@@ -29,9 +29,18 @@ export function planPosition(start: AxisState, target: number, limits: AxisLimit
   checkAxis(start, target, limits);
   const profile = beginProfile(start);
   const sign = approach(profile, target, limits);
-  if (sign !== 0) {
-    const vmax = sign > 0 ? limits.velocity : -(limits.velocityMin ?? -limits.velocity);
-    const way = wayTo(profile, target, sign, vmax, limits);
+  return goWay(profile, sign, sign === 0 ? null : wayTo(profile, target, sign, limits), target, limits);
+}
+
+/** Appends a way and the stop after it. */
+export function goWay(
+  profile: Profile,
+  sign: number,
+  way: Way | null,
+  target: number,
+  limits: AxisLimits,
+): Profile {
+  if (way) {
     if (way.kind === 'reBrake') addPhase(profile, way.letGo, sign * limits.jerk);
     else {
       changeVelocity(
@@ -108,7 +117,8 @@ function brakeTo(
 }
 
 /** The optimal way from the profile's end, a state inside the limits whose stop falls short of the target. */
-export function wayTo(profile: Profile, target: number, sign: number, vmax: number, limits: AxisLimits): Way {
+export function wayTo(profile: Profile, target: number, sign: number, limits: AxisLimits): Way {
+  const vmax = sign > 0 ? limits.velocity : -(limits.velocityMin ?? -limits.velocity);
   const { acceleration: amax, jerk } = limits;
   const v = profile.end.velocity * sign;
   const a = profile.end.acceleration * sign;
@@ -138,7 +148,18 @@ export function wayTo(profile: Profile, target: number, sign: number, vmax: numb
   const over = reach(vmax);
   if (over <= 0) return { kind: 'cruise', velocity: vmax, cruise: -over / vmax };
   const low = Math.min(vmax, Math.max(0, atOnce));
-  return { kind: 'cruise', velocity: risingRoot(reach, low, vmax, tolerance), cruise: 0 };
+  // What reach gains with the velocity: each of the two changes w/p + p/2j, with p its largest acceleration.
+  const slopedReach = (velocity: number, out: Sloped): Sloped => {
+    out.value = reach(velocity);
+    const rise = up.last * jerk;
+    const fall = down.last * jerk;
+    out.slope = velocity / rise + velocity / fall + (rise + fall) / (2 * jerk);
+    return out;
+  };
+  if (reach(low) >= 0) return { kind: 'cruise', velocity: low, cruise: 0 };
+  // From rest to rest without touching the acceleration limit: 2·w·√(w/j) is the whole way.
+  const guess = Math.min(vmax, Math.max(low, Math.cbrt((wanted * wanted * jerk) / 4)));
+  return { kind: 'cruise', velocity: risingRootNewton(slopedReach, low, vmax, guess, tolerance), cruise: 0 };
 }
 
 /** Appends the stop and pins the end: what is left is rounding of the root. */

@@ -36,3 +36,39 @@ export function risingRoot(f: (x: number) => number, low: number, high: number, 
   }
   return (a + b) / 2;
 }
+
+/** A function and its slope at the place it was last asked for. */
+export interface Sloped {
+  value: number;
+  slope: number;
+}
+
+/**
+ * The same for a function whose slope is known: Newton's steps from a guess, inside a bracket that only shrinks.
+ *
+ * @param f - fills and returns `out`; rising between `low` and `high`
+ */
+export function risingRootNewton(
+  f: (x: number, out: Sloped) => Sloped,
+  low: number,
+  high: number,
+  guess: number,
+  tolerance: number,
+): number {
+  let a = low;
+  let b = high;
+  let x = guess > a && guess < b ? guess : (a + b) / 2;
+  for (let i = 0; i < MOST_STEPS; i++) {
+    const { value, slope } = f(x, sloped);
+    if (value <= tolerance && value >= -tolerance) return x;
+    if (value > 0) b = x;
+    else a = x;
+    const next = x - value / slope;
+    // A step that leaves the bracket, or no slope at all, halves it instead.
+    const to = next > a && next < b ? next : (a + b) / 2;
+    if (to === x || to === a || to === b) return to;
+    x = to;
+  }
+  return x;
+}
+const sloped: Sloped = { value: 0, slope: 1 };

@@ -1,10 +1,11 @@
-import { approach, finish, planPosition, wayTo } from './position';
-import { type AxisLimits, type AxisState, addPhase, beginProfile, type Profile } from './profile';
-import { risingRoot } from './root';
+import { approach, finish, goWay, type Way, wayTo } from './position';
+import { type AxisLimits, type AxisState, addPhase, beginProfile, checkAxis, type Profile } from './profile';
+import { risingRootNewton, type Sloped } from './root';
 import { addVelocityChange, changeVelocity, newVelocityChange } from './velocity';
 
 const up = newVelocityChange();
 const down = newVelocityChange();
+const at: Sloped = { value: 0, slope: 1 };
 
 /**
  * Moves that end together, as early as possible: the slowest axis sets the time, the others travel at a
@@ -25,30 +26,40 @@ export function planSynchronised(
     throw new RangeError(
       `starts, targets and limits differ in length: ${starts.length}, ${targets.length}, ${limits.length}`,
     );
-  const profiles = starts.map((start, i) => planPosition(start, targets[i]!, limits[i]!));
+  const axes = starts.map((start, i) => begin(start, targets[i]!, limits[i]!));
   let duration = 0;
-  for (const profile of profiles) duration = Math.max(duration, profile.duration);
-  return profiles.map((profile, i) =>
-    profile.duration === duration
-      ? profile
-      : stretched(starts[i]!, targets[i]!, limits[i]!, duration, profile),
+  for (const { quickest } of axes) duration = Math.max(duration, quickest.duration);
+  return axes.map((axis, i) =>
+    axis.quickest.duration === duration ? axis.quickest : stretched(axis, targets[i]!, limits[i]!, duration),
   );
 }
 
-function stretched(
-  start: AxisState,
-  target: number,
-  limits: AxisLimits,
-  duration: number,
-  quickest: Profile,
-): Profile {
+/** An axis brought inside its limits, and the quickest way on from there. */
+interface Axis {
+  approached: Profile;
+  sign: number;
+  way: Way | null;
+  quickest: Profile;
+}
+
+function begin(start: AxisState, target: number, limits: AxisLimits): Axis {
+  checkAxis(start, target, limits);
+  const approached = beginProfile(start);
+  const sign = approach(approached, target, limits);
+  const way = sign === 0 ? null : wayTo(approached, target, sign, limits);
+  const { position, velocity, acceleration } = approached.end;
+  const quickest = {
+    duration: approached.duration,
+    phases: approached.phases.slice(),
+    end: { position, velocity, acceleration },
+  };
+  return { approached, sign, way, quickest: goWay(quickest, sign, way, target, limits) };
+}
+
+function stretched(axis: Axis, target: number, limits: AxisLimits, duration: number): Profile {
+  const { approached: profile, sign, way, quickest } = axis;
+  if (way?.kind !== 'cruise') return waiting(quickest, duration);
   const { acceleration: amax, jerk } = limits;
-  const profile = beginProfile(start);
-  const sign = approach(profile, target, limits);
-  if (sign === 0) return waiting(quickest, duration);
-  const vmax = sign > 0 ? limits.velocity : -(limits.velocityMin ?? -limits.velocity);
-  const way = wayTo(profile, target, sign, vmax, limits);
-  if (way.kind === 'reBrake') return waiting(quickest, duration);
   const { end } = profile;
   const v = end.velocity * sign;
   const a = end.acceleration * sign;
@@ -59,16 +70,19 @@ function stretched(
     changeVelocity(velocity, 0, 0, amax, jerk, down);
     return (wanted - up.distance - down.distance) / velocity;
   };
-  /** Rises with the velocity: the time left over at the end. */
-  const spare = (velocity: number): number => {
+  /** Rises with the velocity: the time left over at the end. Its slope: (cruise + (p₁ + p₂)/2j)/w, p the largest accelerations. */
+  const spare = (velocity: number, out: Sloped): Sloped => {
     const cruise = cruiseAt(velocity);
-    return left - (up.lead + up.first + up.hold + up.last + cruise + down.first + down.hold + down.last);
+    out.value = left - (up.lead + up.first + up.hold + up.last + cruise + down.first + down.hold + down.last);
+    out.slope = (cruise + (up.last + down.last) / 2) / velocity;
+    return out;
   };
   let low = way.velocity;
-  for (let i = 0; i < 60 && spare(low) > 0; i++) low /= 2;
-  const velocity = risingRoot(spare, low, way.velocity, 4 * Number.EPSILON * duration);
+  for (let i = 0; i < 60 && spare(low, at).value > 0; i++) low /= 2;
+  const guess = Math.max(low, Math.min(way.velocity, wanted / left));
+  const velocity = risingRootNewton(spare, low, way.velocity, guess, 4 * Number.EPSILON * duration);
   const cruise = cruiseAt(velocity);
-  if (!(cruise >= 0) || Math.abs(spare(velocity)) > 1e-9) return waiting(quickest, duration);
+  if (!(cruise >= 0) || Math.abs(spare(velocity, at).value) > 1e-9) return waiting(quickest, duration);
   changeVelocity(end.velocity, end.acceleration, sign * velocity, amax, jerk, up);
   addVelocityChange(profile, up, sign * velocity);
   addPhase(profile, cruise, 0);

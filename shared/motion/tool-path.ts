@@ -363,6 +363,7 @@ function fastestAlong(chain: Chain, spline: Spline): number {
   return fastest;
 }
 
+const UNLIMITED = 1e6;
 /** Share of a joint's acceleration, and of its jerk, that the curve may take up at the speed in hand. */
 const MOST_CURVE = 0.5;
 
@@ -421,8 +422,9 @@ export function toolPathLimits(
           jerk = Math.min(jerk, Math.max(chain.jerk[i]! - curve, 0.1 * chain.jerk[i]!) / slope);
         }
       }
-  if (!Number.isFinite(acceleration) || !Number.isFinite(jerk))
-    return { velocity: 1, acceleration: 1, jerk: 1 };
+  // Joints without limits of their own: any figure does, as long as it is one.
+  if (!Number.isFinite(acceleration)) acceleration = UNLIMITED;
+  if (!Number.isFinite(jerk)) jerk = UNLIMITED;
   return { velocity, acceleration, jerk };
 }
 

@@ -160,9 +160,14 @@ const cases = Array.from({ length: 500 }, () => ({
     jerk: 20 + 10 * random(),
   } satisfies AxisLimits,
 }));
-const axes = Array.from({ length: 200 }, (_, k) =>
-  Array.from({ length: 6 }, (_, i) => cases[(7 * k + 31 * i) % cases.length]!),
-);
+const axes = Array.from({ length: 200 }, (_, k) => {
+  const six = Array.from({ length: 6 }, (_, i) => cases[(7 * k + 31 * i) % cases.length]!);
+  return {
+    starts: six.map((c) => c.start),
+    targets: six.map((c) => c.target),
+    limits: six.map((c) => c.limits),
+  };
+});
 add(
   'position profile, one axis',
   timesOf(
@@ -179,12 +184,8 @@ add(
   'synchronised profiles, 6 axes',
   timesOf(
     (k) => {
-      const six = axes[k % axes.length]!;
-      planSynchronised(
-        six.map((c) => c.start),
-        six.map((c) => c.target),
-        six.map((c) => c.limits),
-      );
+      const { starts, targets, limits } = axes[k % axes.length]!;
+      planSynchronised(starts, targets, limits);
     },
     400,
     20,
@@ -207,11 +208,13 @@ rig.declare(juno);
 setCeiling(rig, 0.25);
 hold(rig, { kind: 'joints', q: bent });
 rig.settle(60);
+/** A new hold every three seconds. */
+const HOLD_TICKS = 300;
 const steps = timesOf(
   (k) => {
-    if (k % 100 === 0) {
+    if (k % HOLD_TICKS === 0) {
       rig.send(juno, { type: 'hold.end', holdId: 'h' });
-      press(rig, { kind: 'jog', frame: 'joint', axis: 0, direction: k % 200 === 0 ? 1 : -1 });
+      press(rig, { kind: 'jog', frame: 'joint', axis: 0, direction: k % (2 * HOLD_TICKS) === 0 ? 1 : -1 });
     }
     if (k % 5 === 0) keep(rig, 'h', k);
     rig.tick();

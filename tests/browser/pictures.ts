@@ -102,7 +102,23 @@ await sheet('Runs');
 for (let k = 0; k < 400 && !(await page.getByText('finished').count()); k++) await page.waitForTimeout(200);
 await page.waitForTimeout(600);
 await picture('runs');
+// The tool of Wren, and a ghost of it.
+await page.goto('/');
+await openArm(page, 'Wren');
+await page.locator('canvas[data-ready=true]').waitFor();
+await takeControlAndEnergise(page);
+await declare(page);
+await page.getByRole('button', { name: 'tool along base' }).click();
+await page.waitForTimeout(800);
+await picture('tool');
+await page.getByRole('button', { name: 'a ghost first' }).click();
+for (let k = 0; k < 12; k++) await page.getByRole('button', { name: 'Tool point z, 5 mm more' }).click();
+for (let k = 0; k < 12; k++) await page.getByRole('button', { name: 'Tool point y, 5 mm less' }).click();
+await page.waitForTimeout(800);
+await picture('ghost');
 if (EVERY_SIZE) {
+  await page.goto('/');
+  await openArm(page, 'Heron');
   await page.getByRole('link', { name: 'Sequences', exact: true }).click();
   await page.getByRole('link', { name: 'Weigh one vial' }).waitFor();
   await everySize('sequences');
