@@ -1,10 +1,10 @@
 import { CEILINGS, worstTrust } from '../../shared/arm/trust';
 import type { ClientMessage } from '../../shared/live/client-messages';
-import { straightPath } from '../../shared/motion';
-import type { Program, ProgramStep } from '../../shared/sequence/program';
+import type { Program } from '../../shared/sequence/program';
+import { type GoToProgramStep, stretchFrom } from '../../shared/sequence/stretch';
 import { capsFor, positionKnown } from './ceiling';
 import { mayReach } from './may-move';
-import { isMoving, letGo, replanMove, startMove, startOnPath } from './moves';
+import { isMoving, letGo, replanMove, startOnPath } from './moves';
 import type { Actor, ArmRecord } from './process-messages';
 import { audit, type Refusal, refusal, tell } from './report';
 import type { Arm, ControllerState, Outputs, Run } from './state';
@@ -161,14 +161,13 @@ function goOn(arm: Arm, state: ControllerState, run: Run): void {
   const { move } = state;
   if (run.activity.kind !== 'move' || !move?.ending) return;
   move.ending = false;
-  move.fraction = stepFraction(run, run.program.steps[run.stepIndex]!);
+  move.fraction = heldFraction(run, run.activity.speed);
   replanMove(arm, state, move);
 }
 
-/** A held first cycle goes at most easy, whatever the step asks for. */
-function stepFraction(run: Run, step: ProgramStep): number {
-  const own = step.kind === 'goTo' ? step.speed : 1;
-  return run.held ? Math.min(own, CEILINGS.easy) : own;
+/** A held first cycle goes at most easy, whatever the steps ask for. */
+function heldFraction(run: Run, speed: number): number {
+  return run.held ? Math.min(speed, CEILINGS.easy) : speed;
 }
 
 /** Brings the run `dt` further; moves themselves are advanced elsewhere. */
@@ -201,18 +200,16 @@ export function tickRun(arm: Arm, state: ControllerState, outputs: Outputs, dt: 
 function beginStep(arm: Arm, state: ControllerState, run: Run): string | null {
   const step = run.program.steps[run.stepIndex]!;
   if (step.kind === 'goTo') {
-    const act = { by: 'run', fraction: stepFraction(run, step), target: step.q } as const;
-    if (step.straight) {
-      const { path, refusal: end } = straightPath(
-        arm.chain,
-        state.q,
-        step.q,
-        capsFor(state, act.fraction).fraction,
-      );
-      if (!path) return `No straight way to “${step.label}” from here: ${inWords(arm, end, true)}`;
-      startOnPath(arm, state, path, act);
-    } else startMove(arm, state, step.q, act);
-    run.activity = { kind: 'move' };
+    const { stretch, refused } = stretchFrom(arm.chain, state.q, run.program.steps, run.stepIndex, {
+      ceiling: capsFor(state, run.held ? CEILINGS.easy : 1).fraction,
+      single: run.single,
+    });
+    if (!stretch)
+      return `No straight way to “${refused.step.label}” from here: ${inWords(arm, refused.end, true)}`;
+    const { path, last, corners, speed } = stretch;
+    const { q } = run.program.steps[last] as GoToProgramStep;
+    startOnPath(arm, state, path, { by: 'run', fraction: heldFraction(run, speed), target: q });
+    run.activity = { kind: 'move', corners, speed };
   } else if (step.kind === 'grip') {
     if (state.gripper) state.gripper.target = step.opening;
     run.activity = { kind: 'grip' };
@@ -224,6 +221,12 @@ function stepDone(state: ControllerState, run: Run, dt: number): boolean {
   const { activity } = run;
   const step = run.program.steps[run.stepIndex]!;
   if (activity.kind === 'move') {
+    // Past a corner that is not stood at, the next step is under way.
+    if (activity.corners.length > 0 && (state.move?.s.position ?? 0) >= activity.corners[0]!) {
+      activity.corners.shift();
+      run.stepIndex++;
+      return false;
+    }
     if (isMoving(state) || state.move?.ending) return false;
     if (step.kind === 'goTo' && step.settle > 0) {
       run.activity = { kind: 'wait', leftS: step.settle };

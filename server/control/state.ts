@@ -68,7 +68,8 @@ export interface Hold {
 /** What the present step of a run is waiting for, beyond a move. */
 export type StepActivity =
   | { kind: 'none' }
-  | { kind: 'move' }
+  /** `corners`: where on the path the next step takes over; `speed`: what the steps ask for. */
+  | { kind: 'move'; corners: number[]; speed: number }
   | { kind: 'grip' }
   | { kind: 'wait'; leftS: number };
 

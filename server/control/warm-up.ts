@@ -1,6 +1,6 @@
 import type { ArmModel } from '../../shared/arm/model';
 import { compileChain, seededRandom, toolLine } from '../../shared/kinematics';
-import { toolPath } from '../../shared/motion';
+import { alongPath, blendPaths, jointPath, toolPath } from '../../shared/motion';
 
 const ROUNDS = 40;
 
@@ -17,6 +17,9 @@ export function warmUp(model: ArmModel): void {
     );
     const axis = (['x', 'y', 'z', 'rz'] as const)[round % 4]!;
     const line = toolLine(chain, q, round % 2 ? 'base' : 'tool', axis, 0.3);
-    if (line) toolPath(chain, q, line, { asFar: true });
+    const path = line && toolPath(chain, q, line, { asFar: true }).path;
+    if (!path) continue;
+    const end = Array.from(alongPath(path, path.length, new Float64Array(chain.n)));
+    if (round % 4 === 0) blendPaths(chain, path, jointPath(chain, end, q), 0.01);
   }
 }

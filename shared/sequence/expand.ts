@@ -87,6 +87,7 @@ export function expandSequence({ steps, poses, model }: ExpansionInput): Expansi
             straight: step.kind === 'straightTo',
             speed: speedFraction(step.speed),
             settle: step.settle,
+            blend: step.blend ?? 0,
             label: pose.name,
           });
         }

@@ -16,6 +16,8 @@ export const ProgramStep = z.discriminatedUnion('kind', [
     /** Share of each joint's own speed limit; the ceiling still applies. */
     speed: z.number().min(0.01).max(1),
     settle: z.number().min(0),
+    /** Goes on into the next step within this distance of the pose, m; 0 = stands there. */
+    blend: z.number().min(0),
     /** The pose's name, for people. */
     label: z.string(),
   }),

@@ -10,14 +10,13 @@ import {
   alongPath,
   jointPath,
   lineWords,
-  type MotionPath,
   pathLimits,
   pathRates,
   planPosition,
   sampleProfile,
-  straightPath,
 } from '../motion';
 import type { ProgramStep } from './program';
+import { type GoToProgramStep, type Stretch, stretchFrom } from './stretch';
 
 export interface RehearsalInput {
   model: ArmModel;
@@ -41,18 +40,18 @@ const AT_LIMIT = 1e-9;
  */
 export function rehearse(input: RehearsalInput): Rehearsal {
   const walk = new Walk(input);
-  for (const step of input.steps) walk.step(step);
+  for (let index = 0; index < input.steps.length; ) index = walk.from(index);
   return walk.result();
 }
 
-/** The same, a step at a time: `breathe` may return a promise to wait for before the next step. */
+/** The same, a step (or a blended stretch of steps) at a time: `breathe` may return a promise to wait for before the next step. */
 export async function rehearseInTurns(
   input: RehearsalInput,
   breathe: () => Promise<void> | undefined,
 ): Promise<Rehearsal> {
   const walk = new Walk(input);
-  for (const step of input.steps) {
-    walk.step(step);
+  for (let index = 0; index < input.steps.length; ) {
+    index = walk.from(index);
     const pause = breathe();
     if (pause) await pause;
   }
@@ -88,20 +87,61 @@ class Walk {
     this.used = model.joints.map(() => []);
   }
 
-  step(step: ProgramStep): void {
+  /** Does the step at `index`, and those it goes on into; returns the index of the next one. */
+  from(index: number): number {
+    const step = this.input.steps[index]!;
+    if (step.kind === 'goTo') return this.goTo(index);
     const before = this.t;
-    if (step.kind === 'goTo') this.goTo(step);
-    else if (step.kind === 'grip') {
+    if (step.kind === 'grip') {
       const { gripper } = this.input.model;
       this.stand((Math.abs(step.opening - this.gripper) * (gripper?.travelTime ?? 0)) / GRIPPER_PACE, step);
       this.gripper = step.opening;
     } else this.stand(step.seconds, step);
-    this.durations[step.stepId] = (this.durations[step.stepId] ?? 0) + (this.t - before);
+    this.spend(step, this.t - before);
+    return index + 1;
   }
 
-  private goTo(step: Extract<ProgramStep, { kind: 'goTo' }>): void {
-    const { model, ceiling } = this.input;
-    for (const [i, joint] of model.joints.entries()) {
+  private spend(step: ProgramStep, seconds: number): void {
+    this.durations[step.stepId] = (this.durations[step.stepId] ?? 0) + seconds;
+  }
+
+  private goTo(index: number): number {
+    const { steps, ceiling } = this.input;
+    const stretch = this.stretchFrom(index);
+    const { path, last, corners, speed } = stretch;
+    const run = steps.slice(index, last + 1) as GoToProgramStep[];
+    for (const step of run) this.lookAtLimits(step);
+    const limits = pathLimits(this.chain, path, {
+      fraction: Math.min(speed, ceiling),
+      pointSpeed: ceiling <= CEILINGS.creep ? POINT_SPEED_CREEP_M_S : POINT_SPEED_M_S,
+    });
+    const profile = planPosition({ position: 0, velocity: 0, acceleration: 0 }, path.length, limits);
+    const samples = Math.max(LEAST_SAMPLES * run.length, Math.ceil(profile.duration / SAMPLE_S));
+    const s = { position: 0, velocity: 0, acceleration: 0 };
+    let doing = 0;
+    let begun = 0;
+    for (let k = 0; k <= samples && profile.duration > 0; k++) {
+      const at = (profile.duration * k) / samples;
+      sampleProfile(profile, at, s);
+      while (doing < corners.length && s.position >= corners[doing]!) {
+        this.spend(run[doing]!, at - begun);
+        begun = at;
+        doing++;
+      }
+      alongPath(path, s.position, this.q);
+      pathRates(path, s, this.qd, this.qdd);
+      this.look(this.t + at, run[doing]!);
+    }
+    const step = run.at(-1)!;
+    this.t += profile.duration;
+    this.spend(step, profile.duration - begun + step.settle);
+    for (let i = 0; i < this.chain.n; i++) this.q[i] = step.q[i]!;
+    if (step.settle > 0) this.stand(step.settle, step);
+    return last + 1;
+  }
+
+  private lookAtLimits(step: GoToProgramStep): void {
+    for (const [i, joint] of this.input.model.joints.entries()) {
       const { lower, upper } = joint.limits;
       const margin = Math.min(step.q[i]! - lower, upper - step.q[i]!);
       if (margin < -AT_LIMIT)
@@ -116,45 +156,25 @@ class Walk {
       const best = this.nearest ? this.nearest.margin / this.rangeOf(this.nearest.joint) : Infinity;
       if (share < best) this.nearest = { joint: i, margin, path: step.path };
     }
-    const creeping = ceiling <= CEILINGS.creep;
-    const path = this.pathTo(step);
-    const limits = pathLimits(this.chain, path, {
-      fraction: Math.min(step.speed, ceiling),
-      pointSpeed: creeping ? POINT_SPEED_CREEP_M_S : POINT_SPEED_M_S,
-    });
-    const profile = planPosition({ position: 0, velocity: 0, acceleration: 0 }, path.length, limits);
-    const samples = Math.max(LEAST_SAMPLES, Math.ceil(profile.duration / SAMPLE_S));
-    const s = { position: 0, velocity: 0, acceleration: 0 };
-    for (let k = 0; k <= samples && profile.duration > 0; k++) {
-      const at = (profile.duration * k) / samples;
-      sampleProfile(profile, at, s);
-      alongPath(path, s.position, this.q);
-      pathRates(path, s, this.qd, this.qdd);
-      this.look(this.t + at, step);
-    }
-    this.t += profile.duration;
-    for (let i = 0; i < this.chain.n; i++) this.q[i] = step.q[i]!;
-    if (step.settle > 0) this.stand(step.settle, step);
   }
 
-  /** Where no straight way leads there the step is blocked, and the rest is rehearsed as if it went by joints. */
-  private pathTo(step: Extract<ProgramStep, { kind: 'goTo' }>): MotionPath {
-    if (!step.straight) return jointPath(this.chain, this.q, step.q);
-    const { path, refusal } = straightPath(
-      this.chain,
-      this.q,
-      step.q,
-      Math.min(step.speed, this.input.ceiling),
-    );
-    if (path) return path;
-    const names = this.input.model.joints.map((joint) => joint.name);
+  /** Where no straight way leads to a pose its step is blocked, and rehearsed as if it went by joints, alone. */
+  private stretchFrom(index: number): Stretch {
+    const { model, steps, ceiling } = this.input;
+    const { stretch, refused } = stretchFrom(this.chain, this.q, steps, index, { ceiling, single: false });
+    if (stretch) return stretch;
     this.problem(
-      step,
+      refused.step,
       'blocks',
       'notStraight',
-      `No straight way to “${step.label}”: ${lineWords(names, refusal, true)} Use Go to, or another pose before it.`,
+      `No straight way to “${refused.step.label}”: ${lineWords(
+        model.joints.map((joint) => joint.name),
+        refused.end,
+        true,
+      )} Use Go to, or another pose before it.`,
     );
-    return jointPath(this.chain, this.q, step.q);
+    const step = steps[index] as GoToProgramStep;
+    return { path: jointPath(this.chain, this.q, step.q), last: index, corners: [], speed: step.speed };
   }
 
   private rangeOf(joint: number): number {

@@ -4,6 +4,9 @@ import { z } from 'zod';
 export const StepSpeed = z.union([z.enum(['creep', 'easy', 'full']), z.number().min(0.01).max(1)]);
 export type StepSpeed = z.infer<typeof StepSpeed>;
 
+/** Farther than this from a pose is not at it any more. */
+export const MAX_BLEND_M = 0.1;
+
 /** Stable within a sequence, so that a problem or a drag can name its step. */
 const StepId = z.string().min(1).max(40);
 
@@ -14,6 +17,8 @@ export const GoToStep = z.strictObject({
   speed: StepSpeed,
   /** Time to stand still at the pose before the next step, s. */
   settle: z.number().min(0).max(60).default(0),
+  /** How near the tool comes to the pose when it goes on into the next step without standing, m; left out or 0 = it stands there. */
+  blend: z.number().min(0).max(MAX_BLEND_M).optional(),
 });
 /** As Go to, but the tool takes the straight way. */
 export const StraightToStep = GoToStep.extend({ kind: z.literal('straightTo') });

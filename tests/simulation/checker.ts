@@ -23,8 +23,8 @@ const SLACK = 1e-4;
 const STILL = 1e-7;
 /** Set-points are looked at every tick, so a ramp may seem this many ticks longer than it is. */
 const RAMP_TICKS = 3;
-/** Along a straight line of the tool a ramp may take so much longer than on a straight joint path, */
-const CURVE_SHARE = 1.5;
+/** On a curve of the joints half of their acceleration may go into the curve, so a ramp takes up to twice as long, */
+const CURVE_SHARE = 2;
 /** and a joint may still gain for so many ticks while the tool slows down. */
 const CURVE_TICKS = 8;
 /** A joint that a single-joint motion leaves alone may change by rounding only, rad or m. */

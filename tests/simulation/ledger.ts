@@ -248,7 +248,7 @@ export class Ledger {
     t: number,
   ) {
     const from = message.fromStep ? program.steps.findIndex((s) => s.stepId === message.fromStep) : 0;
-    const before = program.steps.slice(0, from).filter((s) => s.kind === 'goTo').length;
+    const before = stopsOf(program, message.single ?? false, from).length;
     this.run = {
       userId: actor.userId,
       program,
@@ -386,7 +386,7 @@ export class Ledger {
     if (!run) return;
     // A run may always pause by itself, for instance where no straight way leads to its next pose.
     if (shown.page.run?.phase === 'paused') run.paused = true;
-    const stops = run.program.steps.filter((s) => s.kind === 'goTo');
+    const stops = stopsOf(run.program, run.single);
     const there = (i: number) => stops[i]!.q.every((value, j) => Math.abs(value - q[j]!) < ARRIVED);
     while (this.rests(shown) && run.next < stops.length && there(run.next)) {
       run.next++;
@@ -432,11 +432,20 @@ export class Ledger {
     }
     if (nudge) return { kind: 'nudge', joint: nudge.joint, amount: nudge.amount, from: nudge.from };
     if (!run || run.paused) return null;
-    const curved = run.program.steps.some((s) => s.kind === 'goTo' && s.straight);
+    const curved = run.program.steps.some((s) => s.kind === 'goTo' && (s.straight || s.blend > 0));
     if (!run.proven) return hold ? { kind: 'run', curved } : null;
     const counted = run.goAtS !== null && t >= run.goAtS;
     return counted && run.stepAllowed ? { kind: 'run', curved } : null;
   }
+}
+
+/** The steps at whose pose the arm stands; those it goes through without standing are left out. */
+function stopsOf({ steps }: Program, single: boolean, upTo = steps.length) {
+  return steps.slice(0, upTo).flatMap((step, i) => {
+    if (step.kind !== 'goTo') return [];
+    const through = step.blend > 0 && step.settle === 0 && steps[i + 1]?.kind === 'goTo';
+    return through && !single ? [] : [step];
+  });
 }
 
 function isFresh(seenT: number, t: number): boolean {

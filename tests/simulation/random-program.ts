@@ -20,6 +20,7 @@ export function randomProgram(
       ...base,
       q: somewhere(),
       straight: random() < 0.4,
+      blend: random() < 0.3 ? 0.05 * random() : 0,
       speed,
       settle,
       label: 'Somewhere',

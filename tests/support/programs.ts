@@ -17,7 +17,17 @@ export function programOf(steps: ProgramStep[], proven = true, runId = 'run-1'):
 }
 
 export function goTo(stepId: string, q: number[], speed = 1, settle = 0): ProgramStep {
-  return { kind: 'goTo', stepId, path: stepId, q, straight: false, speed, settle, label: `pose ${stepId}` };
+  return {
+    kind: 'goTo',
+    stepId,
+    path: stepId,
+    q,
+    straight: false,
+    blend: 0,
+    speed,
+    settle,
+    label: `pose ${stepId}`,
+  };
 }
 
 export function wait(stepId: string, seconds: number): ProgramStep {

@@ -4,6 +4,7 @@ import { heron } from '../../shared/arm/demo/heron';
 import { wren } from '../../shared/arm/demo/wren';
 import type { ArmModel } from '../../shared/arm/model';
 import { compileChain, forwardKinematics, jacobian, toolAxisOffer } from '../../shared/kinematics';
+import { rehearse } from '../../shared/sequence/rehearse';
 import { goTo, programOf } from '../support/programs';
 import {
   deg,
@@ -277,6 +278,85 @@ describe('a step straight to a pose', () => {
     expect(rig.state.run?.phase).toBe('paused');
     expect(rig.state.run?.reason).toMatch(/^No straight way to “pose b” from here: .*\.$/);
     expect(isStill(rig)).toBe(true);
+  });
+});
+
+describe('a step that goes on into the next', () => {
+  const chain = compileChain(heron);
+  const A = [deg(-20), deg(60), deg(-90), deg(-40)];
+  const B = [deg(25), deg(70), deg(-95), deg(-30)];
+  const C = [deg(25), deg(55), deg(-95), deg(-30)];
+  const through = (id: string, q: number[], blend: number, straight = false) => ({
+    ...goTo(id, q),
+    blend,
+    straight,
+  });
+  const run = (steps: ReturnType<typeof through>[], options: { single?: boolean } = {}): Rig => {
+    const rig = middleRig();
+    hold(rig, { kind: 'joints', q: A });
+    rig.send(
+      juno,
+      { type: 'run.start', turn: rig.state.turn, sequenceId: 'seq-1', cycles: 1, ...options },
+      programOf(steps),
+    );
+    rig.tick(300);
+    return rig;
+  };
+
+  it.each([false, true])(
+    'does not stand at its pose, and passes it as near as it says (straight: %s)',
+    (straight) => {
+      const rig = run([through('b', B, 0.02, straight), through('c', C, 0, straight)]);
+      const corner = [...forwardKinematics(chain, B).position] as Place;
+      const from = rig.setpoints.length;
+      const paths: string[] = [];
+      let nearest = Infinity;
+      let slowest = Infinity;
+      for (let k = 0; k < 3000 && rig.state.run; k++) {
+        rig.tick();
+        const step = rig.state.run?.stepPath;
+        if (step && paths.at(-1) !== step) paths.push(step);
+        const off = distance(rig.telemetry.tool.position as unknown as Place, corner);
+        if (off > nearest) continue;
+        nearest = off;
+        slowest = Math.max(...rig.telemetry.qd.map(Math.abs));
+      }
+      expect(rig.records.find((r) => r.kind === 'runEnded')).toMatchObject({ how: 'finished' });
+      expect(paths).toEqual(['b', 'c']);
+      expect(nearest).toBeGreaterThan(1e-4);
+      expect(nearest).toBeLessThan(0.02);
+      expect(slowest).toBeGreaterThan(0.005);
+      for (const [i, q] of rig.telemetry.q.entries()) expect(q).toBeCloseTo(C[i]!, 5);
+      expect(Math.max(...Object.values(used(heron, sent(rig, from), 0.25)))).toBeLessThan(1.0001);
+      // As long as it was rehearsed, to a tick a step.
+      const seconds = rig.records.flatMap((r) => (r.kind === 'runCycle' ? [r.seconds] : []));
+      const steps = [through('a', A, 0), through('b', B, 0.02, straight), through('c', C, 0, straight)];
+      const { duration, stepDurations } = rehearse({ model: heron, steps, ceiling: 0.25 });
+      expect(Math.abs(seconds[0]! - (duration - stepDurations.a!))).toBeLessThan(4 * TICK_S);
+    },
+  );
+
+  it('stands at it when it goes one step at a time', () => {
+    const rig = run([through('b', B, 0.02), through('c', C, 0)], { single: true });
+    for (let k = 0; k < 2000 && rig.state.run?.phase !== 'stepWaiting'; k++) rig.tick();
+    for (const [i, q] of rig.telemetry.q.entries()) expect(q).toBeCloseTo(B[i]!, 6);
+  });
+
+  it('is paused in the corner and goes on through it', () => {
+    const rig = run([through('b', B, 0.03), through('c', C, 0)]);
+    const corner = [...forwardKinematics(chain, B).position] as Place;
+    for (let k = 0; k < 2000; k++) {
+      rig.tick();
+      if (distance(rig.telemetry.tool.position as unknown as Place, corner) < 0.03) break;
+    }
+    rig.send(juno, { type: 'run.pause', turn: rig.state.turn });
+    rig.settle(5);
+    rig.tick(2);
+    expect(rig.state.run?.phase).toBe('paused');
+    rig.send(juno, { type: 'run.resume', turn: rig.state.turn });
+    for (let k = 0; k < 3000 && rig.state.run; k++) rig.tick();
+    expect(rig.records.find((r) => r.kind === 'runEnded')).toMatchObject({ how: 'finished', cyclesDone: 1 });
+    for (const [i, q] of rig.telemetry.q.entries()) expect(q).toBeCloseTo(C[i]!, 5);
   });
 });
 

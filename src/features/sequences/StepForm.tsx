@@ -1,7 +1,7 @@
 import { useState } from 'react';
 import type { Pose } from '../../../shared/api/resources';
 import type { ArmModel } from '../../../shared/arm/model';
-import type { Step, StepSpeed } from '../../../shared/sequence/steps';
+import { MAX_BLEND_M, type Step, type StepSpeed } from '../../../shared/sequence/steps';
 import { Field, SelectField } from '../../components/Field';
 import { parseNumber } from '../../components/quantity';
 
@@ -103,6 +103,14 @@ export function StepForm({
             max={60}
             value={step.settle}
             onChange={(settle) => onChange({ ...step, settle }, 'settle')}
+          />
+          <NumberField
+            label="Go on within"
+            unit="mm"
+            min={0}
+            max={MAX_BLEND_M * 1000}
+            value={Math.round((step.blend ?? 0) * 1e4) / 10}
+            onChange={(mm) => onChange({ ...step, blend: mm > 0 ? mm / 1000 : undefined }, 'blend')}
           />
         </div>
       );

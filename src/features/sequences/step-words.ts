@@ -26,10 +26,11 @@ export function sentence(
     case 'straightTo': {
       const pose = poses.find((p) => p.id === step.poseId);
       const settle = step.settle > 0 ? `, settle ${step.settle} s` : '';
+      const on = step.blend ? `, goes on within ${Math.round(step.blend * 1e4) / 10} mm` : '';
       return {
         lead: KIND_WORDS[step.kind],
         about: pose?.name ?? 'a pose that is gone',
-        detail: `${speedWord(step.speed)}, ${step.kind === 'goTo' ? 'joints together' : 'the tool on a line'}${settle}`,
+        detail: `${speedWord(step.speed)}, ${step.kind === 'goTo' ? 'joints together' : 'the tool on a line'}${settle}${on}`,
       };
     }
     case 'grip': {
