@@ -1,7 +1,13 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { DEMO_ARMS } from '../../shared/arm/demo-arms';
-import { compileChain, forwardKinematics, toolLine } from '../../shared/kinematics';
+import {
+  type Chain,
+  compileChain,
+  forwardKinematics,
+  type LineTarget,
+  toolLine,
+} from '../../shared/kinematics';
 import {
   alongPath,
   pathLimits,
@@ -12,6 +18,7 @@ import {
   toolPath,
 } from '../../shared/motion';
 import { splineRates, splineThrough, splineValue } from '../../shared/motion/spline';
+import { anyMovingArm } from '../support/random-arms';
 
 const arms = Object.values(DEMO_ARMS).map((model) => ({ model, chain: compileChain(model) }));
 const inside = (share: number, k: number) => {
@@ -31,53 +38,72 @@ const anyPress = fc.record({
   ceiling: fc.constantFrom(0.05, 0.25, 0.6, 1),
 });
 
+/** Plans and plays a line, and throws where a limit is broken or the line is left; false where nothing could be planned. */
+function keepsItsLimits(chain: Chain, q: readonly number[], line: LineTarget, ceiling: number): boolean {
+  const { path } = toolPath(chain, q, line, { asFar: true, fraction: ceiling });
+  if (!path) return false;
+  const limits = pathLimits(chain, path, { fraction: ceiling, pointSpeed: ceiling <= 0.05 ? 0.05 : 0.25 });
+  const profile = planPosition({ position: 0, velocity: 0, acceleration: 0 }, path.length, limits);
+  const dt = 0.01;
+  const sent: number[][] = [];
+  for (let t = 0; t <= Math.min(30, profile.duration + dt); t += dt)
+    sent.push(alongPath(path, sampleProfile(profile, t).position, new Array<number>(chain.n)));
+  const start = [...forwardKinematics(chain, q).position];
+  const way = Array.from(line.position).map((value, k) => value - start[k]!);
+  const length = Math.hypot(...way);
+  for (let k = 3; k < sent.length; k++) {
+    for (let i = 0; i < chain.n; i++) {
+      const [d, c, b, a] = [sent[k]![i]!, sent[k - 1]![i]!, sent[k - 2]![i]!, sent[k - 3]![i]!];
+      if (Math.abs(d - c) / dt > chain.velocity[i]! * ceiling * 1.0001)
+        throw new Error(`joint ${i}: velocity`);
+      if (Math.abs(d - 2 * c + b) / dt ** 2 > chain.acceleration[i]! * 1.0001)
+        throw new Error(`joint ${i}: acceleration`);
+      if (Math.abs(d - 3 * c + 3 * b - a) / dt ** 3 > chain.jerk[i]! * 1.0001)
+        throw new Error(`joint ${i}: jerk`);
+    }
+    const at = forwardKinematics(chain, sent[k]!).position.map((value, m) => value - start[m]!);
+    const along = length > 0 ? at.reduce((sum, value, m) => sum + (value * way[m]!) / length, 0) : 0;
+    const off = Math.sqrt(Math.max(0, at.reduce((sum, value) => sum + value * value, 0) - along * along));
+    if (off > 1e-4) throw new Error(`${off} m off the line`);
+  }
+  return true;
+}
+
 describe('a straight move of the tool', () => {
   it('keeps every limit of every joint at every sample, at any ceiling, and stays on its line', () => {
     let planned = 0;
     fc.assert(
       fc.property(anyPress, ({ arm, share, frame, axis, direction, ceiling }) => {
-        const { chain, model } = arms[arm]!;
-        const q = inside(share, arm);
-        const line = toolLine(chain, q, frame, axis, direction * (axis.length === 2 ? 2 : 0.4));
-        if (!line) return;
-        const { path } = toolPath(chain, q, line, { asFar: true, fraction: ceiling });
-        if (!path) return;
-        planned++;
-        const caps = { fraction: ceiling, pointSpeed: ceiling <= 0.05 ? 0.05 : 0.25 };
-        const limits = pathLimits(chain, path, caps);
-        const profile = planPosition({ position: 0, velocity: 0, acceleration: 0 }, path.length, limits);
-        const sent: number[][] = [];
-        const dt = 0.01;
-        for (let t = 0; t <= profile.duration + dt; t += dt) {
-          const { position } = sampleProfile(profile, t);
-          sent.push(alongPath(path, position, new Array<number>(chain.n)));
-        }
-        const start = forwardKinematics(chain, q).position;
-        const way = line.position as number[];
-        const length = Math.hypot(...way.map((value, k) => value - start[k]!));
-        for (let k = 3; k < sent.length; k++) {
-          for (const [i, joint] of model.joints.entries()) {
-            const [d, c, b, a] = [sent[k]![i]!, sent[k - 1]![i]!, sent[k - 2]![i]!, sent[k - 3]![i]!];
-            const { velocity, acceleration, jerk } = joint.limits;
-            if (Math.abs(d - c) / dt > velocity * ceiling * 1.0001)
-              throw new Error(`${joint.name}: velocity`);
-            if (Math.abs(d - 2 * c + b) / dt ** 2 > acceleration * 1.0001)
-              throw new Error(`${joint.name}: acceleration`);
-            if (Math.abs(d - 3 * c + 3 * b - a) / dt ** 3 > jerk * 1.0001)
-              throw new Error(`${joint.name}: jerk`);
-          }
-          const at = forwardKinematics(chain, sent[k]!).position.map((value, m) => value - start[m]!);
-          const along =
-            length > 0 ? at.reduce((sum, value, m) => sum + (value * (way[m]! - start[m]!)) / length, 0) : 0;
-          const off = Math.sqrt(
-            Math.max(0, at.reduce((sum, value) => sum + value * value, 0) - along * along),
-          );
-          if (off > 1e-4) throw new Error(`${off} m off the line`);
-        }
+        const { chain } = arms[arm]!;
+        const line = toolLine(
+          chain,
+          inside(share, arm),
+          frame,
+          axis,
+          direction * (axis.length === 2 ? 2 : 0.4),
+        );
+        if (line && keepsItsLimits(chain, inside(share, arm), line, ceiling)) planned++;
       }),
       { numRuns: 150 },
     );
     expect(planned).toBeGreaterThan(50);
+  });
+
+  it('does so on arms nobody would build, of four to seven joints', () => {
+    let planned = 0;
+    fc.assert(
+      fc.property(anyMovingArm(4, 7), anyPress, ({ model, q }, { frame, axis, ceiling }) => {
+        const limits = { velocity: 1.2, acceleration: 3, jerk: 20 };
+        const chain = compileChain({
+          ...model,
+          joints: model.joints.map((joint) => ({ ...joint, limits: { ...joint.limits, ...limits } })),
+        });
+        const line = toolLine(chain, q, frame, axis, axis.length === 2 ? 1 : 0.2);
+        if (line && keepsItsLimits(chain, q, line, ceiling)) planned++;
+      }),
+      { numRuns: 300 },
+    );
+    expect(planned).toBeGreaterThan(30);
   });
 
   it('is refused with the joint and the fraction of the way when a limit is in the way', () => {
