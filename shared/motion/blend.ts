@@ -1,5 +1,6 @@
 import { type Chain, forwardKinematics, type LinePath } from '../kinematics';
 import { alongPath, type MotionPath, pathRates } from './path';
+import { splineValue } from './spline';
 import { inTime, LINE_SPEED_M_S, paceOf, type ToolPath } from './tool-path';
 
 /** The blended way is looked at in so many places, more on a long one: one each so many seconds at the full ceiling. */
@@ -20,7 +21,7 @@ const SEARCH = 400;
  * @param second - begins where `first` ends
  * @param corner - m, distance of the tool point from the corner
  * @param fraction - the ceiling it is meant for, as in `toolPath`
- * @returns one path over both; with no corner to speak of it still stands nowhere
+ * @returns one path over both; null where a joint would leave its soft limits in the bend or has been outside before
  * @throws RangeError if the paths do not meet
  */
 export function blendPaths(
@@ -29,7 +30,7 @@ export function blendPaths(
   second: MotionPath,
   corner: number,
   fraction = 1,
-): ToolPath {
+): ToolPath | null {
   const { n } = chain;
   const end = alongPath(first, first.length, new Float64Array(n));
   const start = alongPath(second, 0, new Float64Array(n));
@@ -59,7 +60,22 @@ export function blendPaths(
     for (let i = 0; i < n; i++) q[k * n + i]! -= end[i]!;
   }
   const line: LinePath = { samples, q, tangent, length: total * LINE_SPEED_M_S, angle: 0 };
-  return inTime(chain, line, paceOf(chain, line, fraction, true), samples, 1, null);
+  const path = inTime(chain, line, paceOf(chain, line, fraction, true), samples, 1, null);
+  return staysInside(path) ? path : null;
+}
+
+/** Beyond a limit by more than this, rad or m, is no rounding any more: kept back to the limit it would be felt as a jerk. */
+const ROUNDING = 1e-8;
+
+function staysInside({ spline, lower, upper }: ToolPath): boolean {
+  const { n, segments, step } = spline;
+  const q = new Float64Array(n);
+  for (let k = 0; k <= 2 * segments; k++) {
+    splineValue(spline, (k * step) / 2, q);
+    for (let i = 0; i < n; i++)
+      if (q[i]! < lower[i]! - ROUNDING || q[i]! > upper[i]! + ROUNDING) return false;
+  }
+  return true;
 }
 
 /** From 0 to 1 with no slope and no bend at either end. */

@@ -9,10 +9,21 @@ export type MotionPath = JointPath | ToolPath;
 
 /** The joint values at parameter s, into `out`. */
 export function alongPath<Out extends number[] | Float64Array>(path: MotionPath, s: number, out: Out): Out {
-  if (path.kind === 'tool') splineValue(path.spline, s, out);
-  else for (let i = 0; i < path.direction.length; i++) out[i] = path.from[i]! + path.direction[i]! * s;
+  if (path.kind === 'tool') {
+    splineValue(path.spline, s, out);
+    for (let i = 0; i < path.spline.n; i++) out[i] = keptInside(out[i]!, path.lower[i]!, path.upper[i]!);
+  } else for (let i = 0; i < path.direction.length; i++) out[i] = path.from[i]! + path.direction[i]! * s;
   return out;
 }
+
+/** Beyond a limit by so little is rounding; keeping more back would be felt as a jerk, and is for the supervisor to object to. */
+const ROUNDING = 1e-8;
+const keptInside = (value: number, lower: number, upper: number): number =>
+  value < lower && value > lower - ROUNDING
+    ? lower
+    : value > upper && value < upper + ROUNDING
+      ? upper
+      : value;
 
 const bends: Float64Array[] = [];
 

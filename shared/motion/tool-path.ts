@@ -26,6 +26,9 @@ export interface ToolPath {
   spline: Spline;
   /** Speed of the fastest modelled point for a parameter that runs at 1 per s, the largest along the path; m/s. */
   pointSpeed: number;
+  /** Soft limits of the joints: where the way touches one, the spline's rounding stays inside. */
+  lower: Float64Array;
+  upper: Float64Array;
   /** Why it ends where it does; null when it ends where it was meant to. */
   end: LineRefusal | null;
 }
@@ -95,9 +98,9 @@ export function toolPath(
     const line = followLine(chain, from, shortened, { samples });
     if (line.refusal) return { path: null, refusal: line.refusal };
     const pace = paceOf(chain, line.path, options.fraction ?? 1, options.asFar ?? false);
-    const slow = slowPlace(chain, line.path, pace);
+    const slow = slowPlace(chain, line.path, pace) ?? pinnedPlace(chain, line.path);
     if (slow) {
-      end = { joint: slow.joint, fraction: (share * slow.at) / samples, reason: 'singularity' };
+      end = { joint: slow.joint, fraction: (share * slow.at) / samples, reason: slow.reason };
       if (slow.at < 2 || !options.asFar) return { path: null, refusal: end };
     }
     planned = inTime(chain, line.path, pace, slow?.at ?? samples, finer, end);
@@ -283,8 +286,31 @@ function averaged(values: Float64Array, half: number): Float64Array {
   });
 }
 
+/** A sample at which a path ends early, and the joint it is for. */
+interface Place {
+  at: number;
+  joint: number;
+  reason: LineRefusal['reason'];
+}
+
+/**
+ * The first sample at which a joint has come to its limit though the line goes on, or leaves the limit it stood at,
+ * with an arm that has joints to spare: there that joint would stop or start from one moment to the next.
+ */
+function pinnedPlace(chain: Chain, { samples, q }: LinePath): Place | null {
+  const { n, lower, upper } = chain;
+  for (let k = 1; k < samples; k++)
+    for (let i = 0; i < n; i++) {
+      const at = (row: number) => q[row * n + i]! <= lower[i]! || q[row * n + i]! >= upper[i]!;
+      const changes = at(k) !== at(k - 1);
+      // Leaving a limit with the first sample is a start like any other.
+      if (changes && (k > 1 || at(k))) return { at: k - 1, joint: i, reason: 'limit' };
+    }
+  return null;
+}
+
 /** The first sample at which the tool would only crawl, and the joint that would have to turn fastest there. */
-function slowPlace(chain: Chain, line: LinePath, pace: Pace): { at: number; joint: number } | null {
+function slowPlace(chain: Chain, line: LinePath, pace: Pace): Place | null {
   const { n } = chain;
   for (let k = 0; k <= line.samples; k++) {
     let fastest = 0;
@@ -295,7 +321,7 @@ function slowPlace(chain: Chain, line: LinePath, pace: Pace): { at: number; join
       most = seconds;
       fastest = i;
     }
-    if (pace.open < SLOWEST * most) return { at: k, joint: fastest };
+    if (pace.open < SLOWEST * most) return { at: k, joint: fastest, reason: 'singularity' };
   }
   return null;
 }
@@ -334,7 +360,8 @@ export function inTime(
   const edge = (k: number) =>
     Array.from({ length: n }, (_, i) => line.tangent[k * n + i]! / pace.seconds[k]!);
   const spline = splineThrough(n, q, step, edge(0), edge(last));
-  return { kind: 'tool', length, spline, pointSpeed: fastestAlong(chain, spline), end };
+  const { lower, upper } = chain;
+  return { kind: 'tool', length, spline, pointSpeed: fastestAlong(chain, spline), lower, upper, end };
 }
 
 function knotsFor(chain: Chain, line: LinePath, last: number, length: number): number {

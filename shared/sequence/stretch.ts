@@ -48,18 +48,27 @@ export function stretchFrom(
   index: number,
   options: { ceiling: number; single: boolean },
 ): StretchResult {
-  const last = options.single ? index : lastOfStretch(steps, index);
-  const run = steps.slice(index, last + 1) as GoToProgramStep[];
-  const speed = Math.min(...run.map((step) => step.speed));
-  const fraction = Math.min(speed, options.ceiling);
+  const wanted = options.single ? index : lastOfStretch(steps, index);
+  let run = steps.slice(index, wanted + 1) as GoToProgramStep[];
+  const fraction = Math.min(...run.map((step) => step.speed), options.ceiling);
   let path: MotionPath | null = null;
   let at: readonly number[] = from;
   for (const [k, step] of run.entries()) {
     const next = wayTo(chain, at, step, fraction);
     if (!next.path) return { stretch: null, refused: { step, end: next.refusal } };
-    path = path ? blendPaths(chain, path, next.path, run[k - 1]!.blend, fraction) : next.path;
+    const on: MotionPath | null = path
+      ? blendPaths(chain, path, next.path, run[k - 1]!.blend, fraction)
+      : next.path;
+    if (!on) {
+      // In the bend a joint would leave its limits: it stands at this corner after all.
+      run = run.slice(0, k);
+      break;
+    }
+    path = on;
     at = step.q;
   }
+  const speed = Math.min(...run.map((step) => step.speed));
+  const last = index + run.length - 1;
   return { stretch: { path: path!, last, corners: cornersOf(path!, run), speed }, refused: null };
 }
 

@@ -42,7 +42,7 @@ function square() {
 describe('a corner that is blended', () => {
   it.each([0.005, 0.015])('leaves both lines only within %d m of the corner', (corner) => {
     const { chain, first, second } = square();
-    const path = blendPaths(chain, first, second, corner);
+    const path = blendPaths(chain, first, second, corner)!;
     const at = toolAt(chain, first, first.length);
     const [from, to] = [toolAt(chain, first, 0), toolAt(chain, second, second.length)];
     const places = placesOn(chain, path);
@@ -65,7 +65,7 @@ describe('a corner that is blended', () => {
   it('keeps every limit of every joint, does not stand at the corner, and takes less time than two moves', () => {
     const { chain, first, second } = square();
     const ceiling = 0.25;
-    const path = blendPaths(chain, first, second, 0.015, ceiling);
+    const path = blendPaths(chain, first, second, 0.015, ceiling)!;
     const limits = pathLimits(chain, path, { fraction: ceiling, pointSpeed: 0.25 });
     const profile = planPosition({ position: 0, velocity: 0, acceleration: 0 }, path.length, limits);
     const dt = 0.01;
@@ -103,11 +103,21 @@ describe('a corner that is blended', () => {
     ];
     const first = jointPath(chain, a!, b!);
     const second = straightPath(chain, b!, c!).path!;
-    const path = blendPaths(chain, first, second, 0.01);
+    const path = blendPaths(chain, first, second, 0.01)!;
     for (const [i, value] of alongPath(path, 0, new Float64Array(4)).entries())
       expect(value).toBeCloseTo(a![i]!, 9);
     for (const [i, value] of alongPath(path, path.length, new Float64Array(4)).entries())
       expect(value).toBeCloseTo(c![i]!, 6);
+  });
+
+  it('is not blended where a joint would be outside its soft limits', () => {
+    const chain = compileChain(heron);
+    const beyond = [deg(130), deg(70), deg(-90), deg(-40)];
+    const inside = [deg(100), deg(65), deg(-90), deg(-40)];
+    const on = [deg(60), deg(65), deg(-90), deg(-40)];
+    expect(
+      blendPaths(chain, jointPath(chain, beyond, inside), jointPath(chain, inside, on), 0.02),
+    ).toBeNull();
   });
 
   it('refuses paths that do not meet', () => {
