@@ -20,7 +20,8 @@ createRoot(root).render(
       <RouterProvider router={router} />
       <Toaster
         position="bottom-left"
-        offset={{ bottom: 112 }}
+        // Above the status strip and the run bar: nothing that stops or runs the arm is covered.
+        offset={{ bottom: 196 }}
         mobileOffset={{ bottom: 220 }}
         duration={6000}
       />
