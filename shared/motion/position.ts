@@ -124,7 +124,7 @@ export function wayTo(profile: Profile, target: number, sign: number, limits: Ax
   const a = profile.end.acceleration * sign;
   const wanted = (target - profile.end.position) * sign;
   const tolerance =
-    2 * Number.EPSILON * (Math.abs(target) + Math.abs(profile.end.position) + Math.abs(wanted));
+    8 * Number.EPSILON * (Math.abs(target) + Math.abs(profile.end.position) + Math.abs(wanted));
   // The velocity after letting the acceleration off.
   const atOnce = v + (a * Math.abs(a)) / (2 * jerk);
   const reach = (velocity: number): number =>

@@ -80,7 +80,7 @@ function stretched(axis: Axis, target: number, limits: AxisLimits, duration: num
   let low = way.velocity;
   for (let i = 0; i < 60 && spare(low, at).value > 0; i++) low /= 2;
   const guess = Math.max(low, Math.min(way.velocity, wanted / left));
-  const velocity = risingRootNewton(spare, low, way.velocity, guess, 4 * Number.EPSILON * duration);
+  const velocity = risingRootNewton(spare, low, way.velocity, guess, 32 * Number.EPSILON * duration);
   const cruise = cruiseAt(velocity);
   if (!(cruise >= 0) || Math.abs(spare(velocity, at).value) > 1e-9) return waiting(quickest, duration);
   changeVelocity(end.velocity, end.acceleration, sign * velocity, amax, jerk, up);
