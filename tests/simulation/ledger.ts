@@ -34,6 +34,7 @@ interface HoldEntry {
   motion: HoldMotion;
   from: readonly number[];
   lastSeq: number;
+  sinceS: number;
   lastKeepS: number;
   moved: boolean;
 }
@@ -88,8 +89,9 @@ export class Ledger {
     for (const incoming of delivered) this.take(incoming, answers, shown);
     this.passTime(shown);
     this.finish(shown);
-    this.compare(shown);
+    // First what ends everything: then control may pass on in the same tick.
     this.restrict(shown);
+    this.compare(shown);
     this.followRun(shown);
     this.q = [...shown.q];
     return this.decide(shown.t);
@@ -227,6 +229,7 @@ export class Ledger {
       motion,
       from: this.q,
       lastSeq: -1,
+      sinceS: shown.t,
       lastKeepS: shown.t,
       moved: false,
     };
@@ -372,7 +375,9 @@ export class Ledger {
     if (this.hold && !powered(shown, jointOf(this.hold.motion))) this.hold = null;
     if (this.nudge && !powered(shown, this.nudge.joint)) this.nudge = null;
     // What was begun with the position known ends with it; a search for the switch gives it up by itself.
-    if (this.known && !known && this.hold?.motion.kind !== 'reference') {
+    // In the tick of a doubt a joint may be held that was not held before it.
+    const begun = this.hold?.sinceS !== shown.t;
+    if (this.known && !known && begun && this.hold?.motion.kind !== 'reference') {
       this.hold = null;
       this.nudge = null;
     }
