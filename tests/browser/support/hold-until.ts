@@ -18,8 +18,10 @@ export async function holdUntil(
   for (let press = 0; press < MOST_PRESSES && Date.now() < endMs; press++) {
     const box = await button.boundingBox();
     if (!box) {
+      // The page may just be drawing it anew; a person looks again.
       if (await done()) return;
-      throw new Error('the button to hold is gone');
+      await page.waitForTimeout(200);
+      continue;
     }
     await page.mouse.move(box.x + box.width / 2, box.y + box.height / 2);
     await page.mouse.down();
