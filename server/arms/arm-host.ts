@@ -57,7 +57,7 @@ export class ArmHost {
     this.child = child;
     this.startedAtMs = this.options.wallMs();
     child.on('message', (message) => this.hear(message as FromArmProcess));
-    child.on('error', (error) => this.options.log.warn(`arm process of ${model.name}: ${error.message}`));
+    child.on('error', (error) => this.complain(error));
     child.on('exit', (code, signal) => this.died(child, signal ?? `exit code ${code}`));
     this.send({
       kind: 'open',
@@ -74,9 +74,15 @@ export class ArmHost {
     const child = this.child;
     if (!child?.connected) return false;
     child.send(message, (error) => {
-      if (error) this.options.log.warn(`arm process of ${this.options.model.name}: ${error.message}`);
+      if (error) this.complain(error);
     });
     return true;
+  }
+
+  /** That a message found the process gone is no news: its end is told by `died`. */
+  private complain(error: Error & { code?: string }): void {
+    if (error.code === 'EPIPE' || error.code === 'ERR_IPC_CHANNEL_CLOSED') return;
+    this.options.log.warn(`arm process of ${this.options.model.name}: ${error.message}`);
   }
 
   setUnattended(unattended: boolean): void {
